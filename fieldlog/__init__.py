@@ -1,0 +1,1 @@
+"""Ergbook: offline field notebook and statistics desk for dune and desert surveys."""

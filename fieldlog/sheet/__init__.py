@@ -1,0 +1,1 @@
+"""The sheets: what may be said about a survey, declared once."""
