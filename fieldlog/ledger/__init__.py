@@ -1,0 +1,1 @@
+"""Entries as plain values: naming, clocks, merging and projecting them. No database here."""

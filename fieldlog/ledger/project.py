@@ -1,0 +1,63 @@
+"""From a merged record to the row that the tables hold. Mirrored in static/js/ledger/project.js."""
+
+from __future__ import annotations
+
+from datetime import UTC, datetime
+from typing import Any
+
+from fieldlog.ledger.entry import read_time
+from fieldlog.ledger.merge import Merged
+from fieldlog.sheet.derive import derive
+from fieldlog.sheet.fields import ABSENCES, Field, Sheet, absent_column
+from fieldlog.sheet.subjects import SHEETS
+
+
+def project(merged: Merged) -> dict[str, Any]:
+    """The row of one record: the sheet's columns with Python values (times as aware UTC datetimes),
+    derived columns, and made_by, made_on, made_at of its creating entry, which must be there.
+
+    Fields that the sheet does not know stay in the ledger and out of the row.
+    """
+    created = merged.created
+    if created is None:
+        raise ValueError("a record without its creating entry has no row yet")
+    sheet = SHEETS[created.kind]
+    row = _columns(sheet, merged.values)
+    row["record"] = created.name
+    row["made_by"] = created.body["by"]
+    row["made_on"] = created.device
+    row["made_at"] = read_time(created.body["made_at"])
+    return row
+
+
+def _columns(sheet: Sheet, values: dict[str, Any]) -> dict[str, Any]:
+    row: dict[str, Any] = {}
+    for field in sheet.said:
+        value = values.get(field.name)
+        absent = None
+        if isinstance(value, dict):
+            absent, value = value.get("absent"), None
+        row[field.name] = _native(field, value)
+        if field.measure:
+            row[absent_column(field.name)] = absent if absent in ABSENCES else None
+    row.update(derive(sheet, row))
+    for field in sheet.fields:
+        if field.is_derived and field.measure:
+            row[absent_column(field.name)] = None
+    return row
+
+
+def _native(field: Field, value: Any) -> Any:
+    if value is None:
+        return None
+    if field.type == "time":
+        return read_time(value)
+    if field.type in ("number", "direction", "orientation"):
+        return float(value)
+    return value
+
+
+def wire_time(when: datetime) -> str:
+    """A time as the wire and the phone's rows write it: whole seconds where they are whole."""
+    text = when.astimezone(UTC).isoformat(timespec="milliseconds").replace("+00:00", "Z")
+    return text.replace(".000Z", "Z")
