@@ -1,0 +1,1 @@
+"""The central database: ledger, projected tables, cursor, photos."""

@@ -1,0 +1,34 @@
+"""Who this store is."""
+
+from __future__ import annotations
+
+from sqlalchemy.orm import Session, scoped_session
+
+from fieldlog.ledger.names import new_device
+from fieldlog.store.tables import StoreIdentity
+
+
+def identity(session: Session | scoped_session[Session]) -> StoreIdentity:
+    """The store's id and epoch; RuntimeError where the database has not been set up."""
+    found = session.get(StoreIdentity, 1)
+    if found is None:
+        raise RuntimeError("this database has no store identity: run the migrations")
+    return found
+
+
+def ensure_identity(session: Session | scoped_session[Session]) -> StoreIdentity:
+    """The store's id and epoch, made at first start. Inside `write()`."""
+    found = session.get(StoreIdentity, 1)
+    if found is None:
+        found = StoreIdentity(id=1, store=new_device(), epoch=new_device())
+        session.add(found)
+        session.flush()
+    return found
+
+
+def begin_epoch(session: Session | scoped_session[Session]) -> str:
+    """A new epoch: this store has gone back in time, phones must compare anew. Inside `write()`."""
+    found = ensure_identity(session)
+    found.epoch = new_device()
+    session.flush()
+    return found.epoch
