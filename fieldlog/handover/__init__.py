@@ -1,0 +1,1 @@
+"""Handing over: batches in, changes out, photos."""
