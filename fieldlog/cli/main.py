@@ -12,13 +12,11 @@ from fieldlog import __version__
 from fieldlog.errors import Refusal
 
 COMMANDS: Final = {
-    "backup": "fieldlog.cli.backup:backup",
     "check": "fieldlog.cli.check:check",
     "demo": "fieldlog.cli.demo:demo",
     "export": "fieldlog.cli.export:export",
     "import": "fieldlog.cli.import_:import_",
     "migration": "fieldlog.cli.migration:migration",
-    "restore": "fieldlog.cli.backup:restore",
     "serve": "fieldlog.cli.serve:serve",
     "stats": "fieldlog.cli.stats:stats",
     "surveys": "fieldlog.cli.surveys:surveys",
