@@ -14,7 +14,7 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import Protocol
 
-from PIL import Image, UnidentifiedImageError
+from PIL import Image, ImageOps, UnidentifiedImageError
 
 from fieldlog.errors import Refusal
 
@@ -107,7 +107,7 @@ def media_type_of(data: bytes) -> str:
 def thumbnail(data: bytes) -> bytes:
     """A small JPEG of a photo, long edge 240 px."""
     with Image.open(io.BytesIO(data)) as image:
-        small = image.convert("RGB")
+        small = ImageOps.exif_transpose(image).convert("RGB")
     small.thumbnail((THUMBNAIL_PX, THUMBNAIL_PX))
     out = io.BytesIO()
     small.save(out, "JPEG", quality=80)
