@@ -10,7 +10,7 @@ from sqlalchemy import select
 from sqlalchemy.orm import Session, scoped_session
 
 from fieldlog.errors import Refusal
-from fieldlog.ledger.entry import iso_millis
+from fieldlog.ledger.entry import iso_millis, raw_bytes
 from fieldlog.store.append import Prepared, Result, append, prepare
 from fieldlog.store.identity import identity
 from fieldlog.store.tables import LedgerEntry, SurveyCounter
@@ -42,7 +42,7 @@ def check_batch(survey: str, first: int, texts: Sequence[str], entry_bytes_max: 
     prepared = []
     for n, text in enumerate(texts, start=first):
         item = prepare(survey, n, text)
-        size = len(text.encode("utf-8", errors="replace"))
+        size = len(raw_bytes(text))
         if not item.problem and size > entry_bytes_max:
             item = Prepared(n, text, item.sha256, f"the entry has {size} bytes, more than {entry_bytes_max}")
         prepared.append(item)

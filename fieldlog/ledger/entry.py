@@ -75,8 +75,13 @@ class Entry:
 
 
 def hash_of(text: str) -> str:
-    """SHA-256 of an entry's text, in hexadecimal."""
-    return hashlib.sha256(text.encode("utf-8")).hexdigest()
+    """SHA-256 of an entry's text in UTF-8, in hexadecimal."""
+    return hashlib.sha256(raw_bytes(text)).hexdigest()
+
+
+def raw_bytes(text: str) -> bytes:
+    """The text's bytes, even where it holds lone surrogates and so is no UTF-8."""
+    return text.encode("utf-8", errors="surrogatepass")
 
 
 def write_text(
@@ -125,8 +130,9 @@ def check_shape(text: str, survey: str) -> dict[str, Any]:
     Values are not looked at here: the wire schema of the kind's sheet does that.
     """
     try:
+        text.encode("utf-8")
         body = json.loads(text, parse_constant=_no_constant)
-    except ValueError as error:
+    except (ValueError, RecursionError) as error:
         raise EntryError(f"the entry is not JSON ({error})") from error
     if not isinstance(body, dict):
         raise EntryError("the entry is not a JSON object")

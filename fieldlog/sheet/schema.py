@@ -35,6 +35,26 @@ class _Number(fields.Field[float]):
         return value
 
 
+class _Flag(fields.Field[bool]):
+    """true or false and nothing that merely equals them."""
+
+    def _deserialize(self, value: Any, attr: str | None, data: Any, **keywords: Any) -> bool:
+        if not isinstance(value, bool):
+            raise ValidationError("is neither true nor false")
+        return value
+
+
+class _Text(fields.Field[str]):
+    """Text that every database can hold."""
+
+    def _deserialize(self, value: Any, attr: str | None, data: Any, **keywords: Any) -> str:
+        if not isinstance(value, str):
+            raise ValidationError("is not text")
+        if "\x00" in value or any("\ud800" <= character <= "\udfff" for character in value):
+            raise ValidationError("holds a character that is no text")
+        return value
+
+
 class _Time(fields.Field[str]):
     """UTC, ISO 8601, ending with Z."""
 
@@ -110,17 +130,17 @@ def wire_field(field: Field) -> fields.Field[Any]:
         inner = _Number(whole=field.type == "integer", validate=bounds and [bounds] or [], **common)
     elif field.type == "choice":
         words = [word.value for word in VOCABULARIES[field.vocabulary or ""]]
-        inner = fields.String(validate=validate.OneOf(words, error="{input} is none of {choices}"), **common)
+        inner = _Text(validate=validate.OneOf(words, error="{input} is none of {choices}"), **common)
     elif field.type == "text":
-        inner = fields.String(validate=validate.Length(max=field.max_length), **common)
+        inner = _Text(validate=validate.Length(max=field.max_length), **common)
     elif field.type == "flag":
-        inner = fields.Boolean(truthy={True}, falsy={False}, **common)
+        inner = _Flag(**common)
     elif field.type == "time":
         inner = _Time(**common)
     elif field.type == "reference":
-        inner = fields.String(validate=validate.Regexp(_REFERENCE, error="{input} is not the id of a record"), **common)
+        inner = _Text(validate=validate.Regexp(_REFERENCE, error="{input} is not the id of a record"), **common)
     elif field.type == "names":
-        inner = fields.List(fields.String(validate=validate.Length(max=60)), **common)
+        inner = fields.List(_Text(validate=validate.Length(max=60)), **common)
     else:
         inner = _Points(**common)
     return _Measure(inner, **common) if field.measure else inner

@@ -18,7 +18,7 @@ from sqlalchemy.orm import Session, scoped_session
 from fieldlog import __version__
 from fieldlog.errors import Refusal
 from fieldlog.ledger import clock, names
-from fieldlog.ledger.entry import Entry, EntryError, check_shape, hash_of, write_text
+from fieldlog.ledger.entry import Entry, EntryError, check_shape, hash_of, raw_bytes, write_text
 from fieldlog.ledger.merge import merge
 from fieldlog.sheet.schema import problems
 from fieldlog.sheet.subjects import PHONE_KINDS
@@ -28,6 +28,7 @@ from fieldlog.store.tables import DeviceCounter, LedgerEntry, SetAside, SurveyCo
 AnySession = Session | scoped_session[Session]
 Status = Literal["stored", "already", "set_aside", "forked"]
 
+PROBLEM_MAX = 500
 CHUNK = 500
 """Names a query asks for at once; SQLite allows some thousands of variables."""
 
@@ -80,8 +81,13 @@ def prepare(survey: str, n: int, text: str, *, kinds: frozenset[str] = PHONE_KIN
         if wrong:
             raise EntryError("; ".join(f"{field} {what}" for field, what in wrong.items()), "set")
     except Refusal as refusal:
-        return Prepared(n, text, sha256, str(refusal))
+        return Prepared(n, text, sha256, _plain(str(refusal)))
     return Prepared(n, text, sha256)
+
+
+def _plain(problem: str) -> str:
+    """A problem that any database can hold, of a length that a phone can show."""
+    return problem.replace("\x00", "").encode("utf-8", errors="replace").decode("utf-8")[:PROBLEM_MAX]
 
 
 def open_survey(session: AnySession) -> str:
@@ -137,7 +143,7 @@ def append(
         if problem:
             aside.append(
                 {
-                    "survey": survey, "device": device, "n": item.n, "text": item.text.encode("utf-8"),
+                    "survey": survey, "device": device, "n": item.n, "text": raw_bytes(item.text),
                     "sha256": item.sha256, "problem": problem, "received_at": now,
                 }
             )

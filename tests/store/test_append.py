@@ -159,3 +159,13 @@ def test_many_writers_leave_consecutive_numbers(app: Flask, survey: Survey) -> N
     numbers = db.session.scalars(select(LedgerEntry.seq).order_by(LedgerEntry.seq)).all()
     assert numbers == list(range(1, 3 + 8 * 40 + 1))
     assert list(check(db.session)) == []
+
+
+@pytest.mark.parametrize(
+    "text", ["", "{", "[]", '{"v":0}', '{"v":1e999}', "\ud800", "\x00", "[" * 100_000, '{"v":0,"set":{"note":"\\u0000"}}']
+)
+def test_no_text_whatever_stops_a_hand_over(survey: Survey, text: str) -> None:
+    device = new_device()
+    batch = [*survey.batch(range(1, 3)), prepare(survey.id, 3, text), *survey.batch(range(4, 6))]
+    assert send(survey, device, batch) == ["stored", "stored", "set_aside", "stored", "stored"]
+    assert send(survey, device, batch) == ["already", "already", "set_aside", "already", "already"]
