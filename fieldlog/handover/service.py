@@ -7,15 +7,14 @@ from dataclasses import dataclass
 from datetime import UTC, datetime
 
 from sqlalchemy import select
-from sqlalchemy.orm import Session, scoped_session
 
 from fieldlog.errors import Refusal
-from fieldlog.ledger.entry import iso_millis, raw_bytes
+from fieldlog.ledger.entry import raw_bytes
+from fieldlog.sheet.times import iso_millis
 from fieldlog.store.append import Prepared, Result, append, prepare
+from fieldlog.store.db import AnySession
 from fieldlog.store.identity import identity
 from fieldlog.store.tables import LedgerEntry, SurveyCounter
-
-AnySession = Session | scoped_session[Session]
 
 
 class WrongStoreError(Refusal, ValueError):

@@ -10,7 +10,7 @@ import hashlib
 import json
 from collections.abc import Mapping
 from dataclasses import dataclass
-from datetime import UTC, datetime
+from datetime import datetime
 from functools import cached_property
 from typing import Any
 
@@ -18,6 +18,7 @@ from fieldlog.errors import Refusal
 from fieldlog.ledger import clock, names
 from fieldlog.ledger.protocol import VERSIONS, upcast
 from fieldlog.sheet.subjects import SHEETS
+from fieldlog.sheet.times import iso_millis, read_time
 
 
 class EntryError(Refusal, ValueError):
@@ -112,23 +113,12 @@ def write_text(
     return json.dumps(body, ensure_ascii=False, separators=(",", ":"), allow_nan=False)
 
 
-def iso_millis(when: datetime) -> str:
-    """UTC as 2026-03-04T05:06:07.123Z."""
-    return when.astimezone(UTC).isoformat(timespec="milliseconds").replace("+00:00", "Z")
-
-
-def read_time(text: str) -> datetime:
-    """A time of the wire form, with its zone; ValueError where it is not one."""
-    if not text.endswith("Z"):
-        raise ValueError(f"a time in UTC ends with Z: {text!r}")
-    return datetime.fromisoformat(text[:-1] + "+00:00")
-
-
 def check_shape(text: str, survey: str) -> dict[str, Any]:
     """The body of an entry text that has the shape of one; EntryError says what is wrong.
 
     Values are not looked at here: the wire schema of the kind's sheet does that.
     """
+    body: Any
     try:
         text.encode("utf-8")
         body = json.loads(text, parse_constant=_no_constant)
@@ -157,7 +147,8 @@ def check_shape(text: str, survey: str) -> dict[str, Any]:
             names.split_name(name)
     except (ValueError, TypeError, AttributeError) as error:
         raise EntryError(str(error)) from error
-    return body
+    checked: dict[str, Any] = body
+    return checked
 
 
 def _names_in(body: Mapping[str, Any]) -> list[str]:

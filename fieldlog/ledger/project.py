@@ -2,14 +2,13 @@
 
 from __future__ import annotations
 
-from datetime import UTC, datetime
 from typing import Any
 
-from fieldlog.ledger.entry import read_time
 from fieldlog.ledger.merge import Merged
 from fieldlog.sheet.derive import derive
 from fieldlog.sheet.fields import ABSENCES, Field, Sheet, absent_column
 from fieldlog.sheet.subjects import SHEETS
+from fieldlog.sheet.times import read_time
 
 
 def project(merged: Merged) -> dict[str, Any]:
@@ -55,9 +54,3 @@ def _native(field: Field, value: Any) -> Any:
     if field.type in ("number", "direction", "orientation"):
         return float(value)
     return value
-
-
-def wire_time(when: datetime) -> str:
-    """A time as the wire and the phone's rows write it: whole seconds where they are whole."""
-    text = when.astimezone(UTC).isoformat(timespec="milliseconds").replace("+00:00", "Z")
-    return text.replace(".000Z", "Z")

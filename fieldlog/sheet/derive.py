@@ -50,7 +50,7 @@ def derive(sheet: Sheet, row: Mapping[str, Any]) -> dict[str, float | None]:
 
 def round_half_up(value: float, decimals: int) -> float:
     """Round as JavaScript's Math.round does, so that phone and store write the same digits."""
-    scale = 10**decimals
+    scale = float(10**decimals)
     return int(value * scale + 0.5) / scale
 
 

@@ -7,7 +7,6 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping
-from datetime import datetime
 from functools import cache
 from typing import Any
 
@@ -15,6 +14,7 @@ from marshmallow import INCLUDE, Schema, ValidationError, fields, validate
 
 from fieldlog.sheet.fields import ABSENCES, Field
 from fieldlog.sheet.subjects import SHEETS
+from fieldlog.sheet.times import read_time
 from fieldlog.sheet.vocabulary import VOCABULARIES
 
 _REFERENCE = r"^[0-9a-hjkmnp-tv-z]{15}-[1-9][0-9]{0,14}$"
@@ -60,10 +60,8 @@ class _Time(fields.Field[str]):
 
     def _deserialize(self, value: Any, attr: str | None, data: Any, **keywords: Any) -> str:
         try:
-            if not value.endswith("Z"):
-                raise ValueError
-            datetime.fromisoformat(value[:-1] + "+00:00")
-        except (AttributeError, ValueError) as error:
+            read_time(value)
+        except (TypeError, ValueError) as error:
             raise ValidationError("is not a UTC time like 2026-03-04T05:06:07Z") from error
         return str(value)
 

@@ -13,19 +13,25 @@ from datetime import UTC, datetime
 from typing import Any, Literal
 
 from sqlalchemy import insert, select, update
-from sqlalchemy.orm import Session, scoped_session
 
 from fieldlog import __version__
 from fieldlog.errors import Refusal
 from fieldlog.ledger import clock, names
-from fieldlog.ledger.entry import Entry, EntryError, check_shape, hash_of, raw_bytes, write_text
+from fieldlog.ledger.entry import (
+    Entry,
+    EntryError,
+    check_shape,
+    hash_of,
+    raw_bytes,
+    write_text,
+)
 from fieldlog.ledger.merge import merge
 from fieldlog.sheet.schema import problems
 from fieldlog.sheet.subjects import PHONE_KINDS
+from fieldlog.store.db import AnySession
 from fieldlog.store.projection import entries_of, project_records
 from fieldlog.store.tables import DeviceCounter, LedgerEntry, SetAside, SurveyCounter
 
-AnySession = Session | scoped_session[Session]
 Status = Literal["stored", "already", "set_aside", "forked"]
 
 PROBLEM_MAX = 500

@@ -15,7 +15,7 @@ from typing import Any
 
 from flask_sqlalchemy import SQLAlchemy
 from sqlalchemy import DateTime, Dialect, Engine, MetaData, event
-from sqlalchemy.orm import DeclarativeBase
+from sqlalchemy.orm import DeclarativeBase, Session, scoped_session
 from sqlalchemy.types import TypeDecorator
 
 BUSY_TIMEOUT_MS = 30_000
@@ -32,6 +32,9 @@ NAMING = {
 class Base(DeclarativeBase):
     metadata = MetaData(naming_convention=NAMING)
 
+
+AnySession = Session | scoped_session[Any]
+"""A session as services take it: the request's, or a plain one."""
 
 db = SQLAlchemy(model_class=Base)
 

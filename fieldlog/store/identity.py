@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-from sqlalchemy.orm import Session, scoped_session
-
 from fieldlog.ledger.names import new_device
+from fieldlog.store.db import AnySession
 from fieldlog.store.tables import StoreIdentity
 
 
-def identity(session: Session | scoped_session[Session]) -> StoreIdentity:
+def identity(session: AnySession) -> StoreIdentity:
     """The store's id and epoch; RuntimeError where the database has not been set up."""
     found = session.get(StoreIdentity, 1)
     if found is None:
@@ -16,7 +15,7 @@ def identity(session: Session | scoped_session[Session]) -> StoreIdentity:
     return found
 
 
-def ensure_identity(session: Session | scoped_session[Session]) -> StoreIdentity:
+def ensure_identity(session: AnySession) -> StoreIdentity:
     """The store's id and epoch, made at first start. Inside `write()`."""
     found = session.get(StoreIdentity, 1)
     if found is None:
@@ -26,7 +25,7 @@ def ensure_identity(session: Session | scoped_session[Session]) -> StoreIdentity
     return found
 
 
-def begin_epoch(session: Session | scoped_session[Session]) -> str:
+def begin_epoch(session: AnySession) -> str:
     """A new epoch: this store has gone back in time, phones must compare anew. Inside `write()`."""
     found = ensure_identity(session)
     found.epoch = new_device()

@@ -7,14 +7,13 @@ from collections.abc import Iterable, Mapping, Sequence
 from typing import Any
 
 from sqlalchemy import delete, insert, select, update
-from sqlalchemy.orm import Session, scoped_session
 
 from fieldlog.ledger.entry import Entry
 from fieldlog.ledger.merge import Merged, merge
 from fieldlog.ledger.project import project
+from fieldlog.store.db import AnySession
 from fieldlog.store.tables import TABLES, LedgerEntry, TwoVersions
 
-AnySession = Session | scoped_session[Session]
 CHUNK = 500
 
 

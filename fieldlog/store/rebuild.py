@@ -8,9 +8,9 @@ from itertools import groupby
 from typing import Any
 
 from sqlalchemy import delete, func, insert, select
-from sqlalchemy.orm import Session, scoped_session
 
 from fieldlog.ledger.entry import Entry, hash_of
+from fieldlog.store.db import AnySession
 from fieldlog.store.projection import row_of, versions_of
 from fieldlog.store.tables import (
     TABLES,
@@ -21,7 +21,6 @@ from fieldlog.store.tables import (
     TwoVersions,
 )
 
-AnySession = Session | scoped_session[Session]
 Progress = Callable[[int, int], None]
 CHUNK = 500
 

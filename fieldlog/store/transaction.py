@@ -5,8 +5,9 @@ from __future__ import annotations
 import threading
 from collections.abc import Iterator
 from contextlib import contextmanager, nullcontext
+from typing import Any
 
-from sqlalchemy.orm import Session, scoped_session
+from sqlalchemy.orm import scoped_session
 
 from fieldlog.store.db import as_writer, db
 
@@ -15,7 +16,7 @@ _one_writer = threading.RLock()
 
 
 @contextmanager
-def write() -> Iterator[scoped_session[Session]]:
+def write() -> Iterator[scoped_session[Any]]:
     """One writing transaction: committed when the block ends, rolled back when it raises.
 
     What the request read before is let go first, so that nothing read outside the lock is written
