@@ -1,0 +1,1 @@
+"""Numbers to shapes, shapes to SVG text."""
