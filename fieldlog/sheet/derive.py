@@ -6,6 +6,7 @@ Mirrored in static/js/sheet/derive.js; tests/vectors/derive.json holds both to t
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping
 from typing import Any
 
@@ -51,7 +52,7 @@ def derive(sheet: Sheet, row: Mapping[str, Any]) -> dict[str, float | None]:
 def round_half_up(value: float, decimals: int) -> float:
     """Round as JavaScript's Math.round does, so that phone and store write the same digits."""
     scale = float(10**decimals)
-    return int(value * scale + 0.5) / scale
+    return math.floor(value * scale + 0.5) / scale
 
 
 def _number(value: object) -> float | None:

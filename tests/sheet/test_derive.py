@@ -10,7 +10,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from fieldlog.sheet.derive import derive
+from fieldlog.sheet.derive import derive, round_half_up
 from fieldlog.sheet.observation import OBSERVATION
 
 CASES = json.loads((Path(__file__).parents[1] / "vectors" / "derive.json").read_text(encoding="utf-8"))
@@ -29,3 +29,8 @@ def test_true_bearings_stay_in_their_half_open_range(read: float, declination: f
     assert derived["slip_face_deg"] is not None
     assert 0 <= derived["crest_deg"] < 180
     assert 0 <= derived["slip_face_deg"] < 360
+
+
+def test_west_declinations_round_to_the_nearest_too() -> None:
+    assert round_half_up(-15.131, 2) == -15.13
+    assert round_half_up(-15.13, 2) == -15.13

@@ -46,7 +46,7 @@ export function derive(sheet, row) {
  */
 export function roundHalfUp(value, decimals) {
   const scale = 10 ** decimals;
-  return Math.trunc(value * scale + 0.5) / scale;
+  return Math.floor(value * scale + 0.5) / scale;
 }
 
 /** @param {unknown} value */
