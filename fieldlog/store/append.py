@@ -104,8 +104,9 @@ def open_survey(session: AnySession) -> str:
 
 
 def admit_survey(session: AnySession, survey: str) -> None:
-    """Make room for a survey that was made elsewhere and comes with its ledger."""
-    session.execute(insert(SurveyCounter).values(survey=survey, seq=0, store_device=names.new_device(), hlc=""))
+    """Make room for a survey that was made elsewhere and comes with its ledger; nothing where it is here."""
+    if session.get(SurveyCounter, survey) is None:
+        session.execute(insert(SurveyCounter).values(survey=survey, seq=0, store_device=names.new_device(), hlc=""))
 
 
 def lock_survey(session: AnySession, survey: str) -> SurveyCounter:
