@@ -1,0 +1,97 @@
+/** Joining a survey: a code in, a device id and a token kept, the whole survey received. */
+
+import {newDevice} from '../ledger/names.js';
+import {checkSecure} from '../store/deps.js';
+import {noteJoined} from '../store/joined.js';
+import {changeInfo, keepInfo, load} from '../store/load.js';
+import {notebookConnection} from '../store/open.js';
+import {Problem} from '../store/problem.js';
+import {resaveUnsent} from '../store/renew.js';
+import {ask, problemIn} from './api.js';
+import {NoConnection} from './failures.js';
+
+/** @typedef {import('../store/deps.js').Deps} Deps */
+/** @typedef {{survey: {id: string, name: string}, crew: {record: string, name: string}[]}} Looked */
+/** @typedef {{code: string, crew?: string, name?: string}} Joining who joins: a crew record, or a new name */
+
+/**
+ * What a joining code opens: the survey, and who is in its crew. Spends nothing.
+ * @param {Deps} deps
+ * @param {string} code
+ * @returns {Promise<Looked>} rejects with a Problem
+ */
+export async function lookCode(deps, code) {
+  const body = await joiningAnswer(deps, 'joining/look', {code});
+  if (typeof body.survey?.id !== 'string' || !Array.isArray(body.crew)) throw noConnection('something other than the store answered');
+  return {survey: body.survey, crew: body.crew};
+}
+
+/**
+ * Join, or join again: a phone that already holds this survey keeps all it holds, and its device
+ * id, unless hand-over stopped because the notebook was found on two phones: then it takes a new
+ * id and says under it again what base has not taken.
+ * @param {Deps} deps
+ * @param {Joining} joining
+ * @returns {Promise<string>} the survey's id; its entries are still to be pulled
+ */
+export async function joinSurvey(deps, {code, crew, name}) {
+  checkSecure(deps);
+  const {survey} = await lookCode(deps, code);
+  const connection = notebookConnection(deps, survey.id);
+  try {
+    const held = await load(connection);
+    const isRenewed = Boolean(held?.info.stopped);
+    const device = held && !isRenewed ? held.info.device : newDevice(deps.crypto);
+    const who = crew ? {crew} : {name};
+    const body = await joiningAnswer(deps, 'joining', {code, device, ...who, app: deps.app});
+    for (const key of ['token', 'crew', 'store', 'epoch']) {
+      if (typeof body[key] !== 'string') throw noConnection('something other than the store answered');
+    }
+    if (held && held.info.store !== body.store) {
+      throw new Problem(
+        'Not joined: this phone holds that survey from another store', '',
+        'Hand over to the store it came from, or save it to a file there, before it is joined here.',
+      );
+    }
+    const info = {
+      survey: survey.id, name: survey.name, crew: body.crew, device, store: body.store, token: body.token,
+      epoch: held?.info.epoch ?? body.epoch, isJoined: held?.info.isJoined ?? false, stopped: '',
+    };
+    if (held && isRenewed) await resaveUnsent(connection, deps, held, info);
+    else await keepInfo(connection, info);
+    return survey.id;
+  } finally {
+    await connection.close();
+  }
+}
+
+/**
+ * The whole survey is here: from now on the phone counts as joined.
+ * @param {Deps} deps
+ * @param {import('../store/open.js').Connection} connection
+ * @param {{survey: string, name: string}} joined
+ * @returns {Promise<import('../store/load.js').Info>}
+ */
+export async function markJoined(deps, connection, joined) {
+  const info = await changeInfo(connection, {isJoined: true, name: joined.name});
+  await noteJoined(deps, joined);
+  return info;
+}
+
+/**
+ * @param {Deps} deps
+ * @param {string} path
+ * @param {Record<string, unknown>} json
+ */
+async function joiningAnswer(deps, path, json) {
+  const answer = await ask(deps, 'POST', path, {json}).catch((error) => {
+    throw error instanceof NoConnection ? noConnection(error.message) : error;
+  });
+  if (answer.status >= 400) throw problemIn(answer);
+  return answer.body;
+}
+
+/** @param {string} detail */
+export function noConnection(detail) {
+  return new Problem('No connection to base', detail, 'Try again where there is a connection.');
+}

@@ -1,0 +1,64 @@
+/** What others said, from base: consecutive pages, each kept together with its cursor. */
+
+import {hashOf} from '../ledger/entry.js';
+import {keepChanges} from '../store/answers.js';
+import {Problem} from '../store/problem.js';
+import {NewEpoch, NoConnection, Stopped} from './failures.js';
+import {problemIn} from './api.js';
+import {stopForked} from './push.js';
+
+/** @typedef {import('./runner.js').Desk} Desk */
+/** @typedef {import('../store/answers.js').Change} Change */
+
+const LIMIT = 500;
+
+/**
+ * Pull until the newest entry is here.
+ * @param {Desk} desk
+ * @param {(done: number, of: number) => void} [onProgress]
+ * @returns {Promise<void>}
+ */
+export async function pull(desk, onProgress = () => {}) {
+  for (;;) {
+    const after = desk.kept.cursor;
+    const answer = await desk.api.ask('GET', `changes?after=${after}&limit=${LIMIT}`);
+    if (answer.status >= 400) throw new Stopped(problemIn(answer));
+    const {epoch, last} = answer.body;
+    if (epoch !== desk.kept.info.epoch) throw new NewEpoch(String(epoch));
+    await desk.heard(answer);
+    const changes = consecutive(answer.body, after);
+    const hashed = await Promise.all(changes.map(async (each) => (
+      {...each, sha256: each.text === undefined ? '' : await hashOf(desk.deps.crypto.subtle, each.text)}
+    )));
+    if (changes.length) {
+      const storeTimeMs = Date.parse(answer.body.time);
+      const {entries, cursor, counter, foreign} = await keepChanges(desk.connection, desk.kept, {after, storeTimeMs, changes: hashed});
+      if (foreign) await stopForked(desk);
+      Object.assign(desk.kept, {cursor, counter});
+      desk.take(entries);
+    }
+    onProgress(desk.kept.cursor, last);
+    if (desk.kept.cursor >= last) return;
+  }
+}
+
+/**
+ * The page's entries, which must follow on from the cursor without a gap.
+ * @param {Record<string, any>} body
+ * @param {number} after
+ * @returns {Change[]}
+ */
+function consecutive(body, after) {
+  const {entries, through, last} = body;
+  if (!Array.isArray(entries) || !Number.isInteger(through) || !Number.isInteger(last)) {
+    throw new NoConnection('the answer is not a list of changes');
+  }
+  const isWhole = entries.every((each, index) => each.seq === after + 1 + index)
+    && through === after + entries.length && last >= through && (entries.length > 0 || last === after);
+  if (isWhole) return entries;
+  throw new Stopped(new Problem(
+    'Base left out an entry',
+    `after number ${after} of the survey the next must come, and it did not`,
+    'What is on this phone stays. Tell whoever runs the store to run: ergbook check',
+  ));
+}
