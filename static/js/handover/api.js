@@ -97,7 +97,9 @@ async function zipped(text) {
  * @returns {Problem}
  */
 export function problemIn({status, body}) {
-  return new Problem(String(body.title ?? `the store answered ${status}`), String(body.detail ?? ''), String(body.mend ?? ''), status);
+  const title = String(body.title ?? `the store answered ${status}`);
+  const detail = String(body.detail ?? '');
+  return new Problem(title, detail.includes(title) ? '' : detail, String(body.mend ?? ''), status);
 }
 
 /** The store, as a joined phone talks to it. */
@@ -148,16 +150,16 @@ export class StoreApi {
   }
 
   /**
-   * Whether base holds a photo. Only an answer that names the hash as its ETag says yes: any proxy
-   * can answer 200.
+   * Whether base holds a photo. Only an answer that names the store in its headers counts: any
+   * proxy can answer 200.
    * @param {string} sha256
    * @returns {Promise<boolean>}
    */
   async hasPhoto(sha256) {
-    const {survey, token} = this.info();
+    const {survey, token, store} = this.info();
     const path = `surveys/${survey}/photos/${sha256}`;
     const {response} = await send(this.deps, 'HEAD', path, {token, signal: this.signal});
-    return response.status === 200 && response.headers.get('ETag') === `"${sha256}"`;
+    return response.status === 200 && response.headers.get('Ergbook-Store') === store;
   }
 
   /**

@@ -6,9 +6,10 @@ import {noteJoined} from '../store/joined.js';
 import {changeInfo, keepInfo, load} from '../store/load.js';
 import {notebookConnection} from '../store/open.js';
 import {Problem} from '../store/problem.js';
-import {resaveUnsent} from '../store/renew.js';
-import {ask, problemIn} from './api.js';
+import {sayAgain} from '../store/renew.js';
+import {StoreApi, ask, problemIn} from './api.js';
 import {NoConnection} from './failures.js';
+import {hashesAtBase} from './pull.js';
 
 /** @typedef {import('../store/deps.js').Deps} Deps */
 /** @typedef {{survey: {id: string, name: string}, crew: {record: string, name: string}[]}} Looked */
@@ -27,9 +28,8 @@ export async function lookCode(deps, code) {
 }
 
 /**
- * Join, or join again: a phone that already holds this survey keeps all it holds, and its device
- * id, unless hand-over stopped because the notebook was found on two phones: then it takes a new
- * id and says under it again what base has not taken.
+ * Join, or join again: after a revoked token, or where the notebook was found on two phones. The
+ * phone keeps all it holds but takes a new device id, and says again under it what base lacks.
  * @param {Deps} deps
  * @param {Joining} joining
  * @returns {Promise<string>} the survey's id; its entries are still to be pulled
@@ -39,30 +39,47 @@ export async function joinSurvey(deps, {code, crew, name}) {
   const {survey} = await lookCode(deps, code);
   const connection = notebookConnection(deps, survey.id);
   try {
+    // Opened before the code is used: where nothing can be kept, nobody joins.
     const held = await load(connection);
-    const isRenewed = Boolean(held?.info.stopped);
-    const device = held && !isRenewed ? held.info.device : newDevice(deps.crypto);
-    const who = crew ? {crew} : {name};
-    const body = await joiningAnswer(deps, 'joining', {code, device, ...who, app: deps.app});
+    const device = newDevice(deps.crypto);
+    const body = await joiningAnswer(deps, 'joining', {code, device, ...(crew ? {crew} : {name}), app: deps.app});
     for (const key of ['token', 'crew', 'store', 'epoch']) {
       if (typeof body[key] !== 'string') throw noConnection('something other than the store answered');
     }
-    if (held && held.info.store !== body.store) {
-      throw new Problem(
-        'Not joined: this phone holds that survey from another store', '',
-        'Hand over to the store it came from, or save it to a file there, before it is joined here.',
-      );
-    }
+    const {token, store, epoch} = body;
     const info = {
-      survey: survey.id, name: survey.name, crew: body.crew, device, store: body.store, token: body.token,
-      epoch: held?.info.epoch ?? body.epoch, isJoined: held?.info.isJoined ?? false, stopped: '',
+      survey: survey.id, name: survey.name, crew: body.crew, device, store, epoch, token, isJoined: false, stopped: '',
     };
-    if (held && isRenewed) await resaveUnsent(connection, deps, held, info);
+    if (held) await joinAgain(deps, connection, held, info);
     else await keepInfo(connection, info);
     return survey.id;
   } finally {
     await connection.close();
   }
+}
+
+/**
+ * @param {Deps} deps
+ * @param {import('../store/open.js').Connection} connection
+ * @param {import('../store/load.js').Kept} held
+ * @param {import('../store/load.js').Info} info
+ */
+async function joinAgain(deps, connection, held, info) {
+  if (held.info.store !== info.store) {
+    throw new Problem(
+      'Not joined: this phone holds that survey from another store', '',
+      'Hand over to the store it came from before it is joined here.',
+    );
+  }
+  const api = new StoreApi(deps, () => info, new AbortController().signal);
+  // What base took without the phone hearing of it must not be said a second time.
+  const hasOldStore = held.info.epoch === info.epoch;
+  const hashes = await hashesAtBase(api, hasOldStore ? held.cursor : 0, held.info.device).catch((error) => {
+    throw error instanceof NoConnection ? noConnection(error.message) : error;
+  });
+  // The old epoch stays, so that the first hand-over sees the new one and compares anew.
+  const kept = {...info, epoch: held.info.epoch, isJoined: held.info.isJoined};
+  await sayAgain(connection, deps, {info: kept, isAtBase: (entry) => hashes.get(entry.n) === entry.sha256 || (hasOldStore && entry.seq !== null)});
 }
 
 /**

@@ -21,12 +21,9 @@ const LIMIT = 500;
 export async function pull(desk, onProgress = () => {}) {
   for (;;) {
     const after = desk.kept.cursor;
-    const answer = await desk.api.ask('GET', `changes?after=${after}&limit=${LIMIT}`);
-    if (answer.status >= 400) throw new Stopped(problemIn(answer));
-    const {epoch, last} = answer.body;
-    if (epoch !== desk.kept.info.epoch) throw new NewEpoch(String(epoch));
+    const {answer, changes} = await page(desk.api, after, desk.kept.info.epoch);
+    const {last} = answer.body;
     await desk.heard(answer);
-    const changes = consecutive(answer.body, after);
     const hashed = await Promise.all(changes.map(async (each) => (
       {...each, sha256: each.text === undefined ? '' : await hashOf(desk.deps.crypto.subtle, each.text)}
     )));
@@ -40,6 +37,39 @@ export async function pull(desk, onProgress = () => {}) {
     onProgress(desk.kept.cursor, last);
     if (desk.kept.cursor >= last) return;
   }
+}
+
+/**
+ * What base holds of another device, among the entries after a cursor: number -> hash of the text.
+ * @param {import('./api.js').StoreApi} api
+ * @param {number} after
+ * @param {string} device
+ * @returns {Promise<Map<number, string>>}
+ */
+export async function hashesAtBase(api, after, device) {
+  /** @type {Map<number, string>} */
+  const hashes = new Map();
+  for (let cursor = after; ;) {
+    const {answer, changes} = await page(api, cursor, api.info().epoch);
+    for (const each of changes) {
+      if (each.device !== device || each.text === undefined) continue;
+      hashes.set(each.n, await hashOf(api.deps.crypto.subtle, each.text));
+    }
+    cursor += changes.length;
+    if (cursor >= answer.body.last) return hashes;
+  }
+}
+
+/**
+ * @param {import('./api.js').StoreApi} api
+ * @param {number} after
+ * @param {string} epoch
+ */
+async function page(api, after, epoch) {
+  const answer = await api.ask('GET', `changes?after=${after}&limit=${LIMIT}`);
+  if (answer.status >= 400) throw new Stopped(problemIn(answer));
+  if (answer.body.epoch !== epoch) throw new NewEpoch(String(answer.body.epoch));
+  return {answer, changes: consecutive(answer.body, after)};
 }
 
 /**

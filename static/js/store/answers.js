@@ -49,7 +49,7 @@ export function keepAnswers(connection, device, results) {
  */
 export function keepChanges(connection, kept, {after, storeTimeMs, changes}) {
   const {device} = kept.info;
-  return connection.transact(['meta', 'ledger', 'queue'], 'readwrite', (transaction, done) => {
+  return connection.transact(['meta', 'ledger'], 'readwrite', (transaction, done) => {
     const meta = transaction.objectStore('meta');
     const ledger = transaction.objectStore('ledger');
     const asked = [meta.get('cursor'), meta.get('counter'), ...changes.map((each) => ledger.get([each.device, each.n]))];
@@ -60,15 +60,17 @@ export function keepChanges(connection, kept, {after, storeTimeMs, changes}) {
       if (unknown) {
         return done({entries: [], cursor: after, counter, foreign: entryName(unknown.device, unknown.n)});
       }
-      const entries = changes.map((each, index) => {
+      const entries = changes.flatMap((each, index) => {
         const {device: of, n, seq, sha256} = each;
-        return rows[index] ? {...rows[index], seq, problem: null} : {device: of, n, text: each.text, sha256, seq, problem: null};
+        if (!rows[index]) return [{device: of, n, text: each.text ?? '', sha256, seq, problem: null}];
+        // An own entry comes without its text. One that still waits stays in the queue: only the
+        // answer to its own text says that base holds that text, and not a copied phone's.
+        return of === device && rows[index].seq === null ? [] : [{...rows[index], seq, problem: null}];
       });
       let {hlc} = counter;
       for (const entry of entries) {
         ledger.put(entry);
-        if (entry.device === device) transaction.objectStore('queue').delete(entry.n);
-        else hlc = advance(hlc, entry.text, storeTimeMs);
+        if (entry.device !== device) hlc = advance(hlc, entry.text, storeTimeMs);
       }
       const through = after + changes.length;
       meta.put(through, 'cursor');
