@@ -13,7 +13,8 @@ def median_direction(angles_deg: Angles, mean_deg: float | None) -> float | None
     """The direction from which the readings lie at the least mean arc distance.
 
     `angles_deg`: shape (n,), any turn. Returns degrees, 0 <= x < 360. A whole arc of such
-    directions gives its middle; of several arcs the one nearest to the mean direction counts; None
+    directions gives the mean of the readings at its ends, each as often as it occurs (as R's
+    package circular does); of several arcs the one nearest to the mean direction counts; None
     where that leaves a choice, where there is no mean, or for an empty sample.
 
     The sum of arc distances is piecewise linear and bends upwards only at readings, so the search
@@ -28,11 +29,13 @@ def median_direction(angles_deg: Angles, mean_deg: float | None) -> float | None
     if len(angles_deg) == 0 or mean_deg is None:
         return None
     x = np.sort(reduced(angles_deg))
-    places = np.unique(x)
+    places, counts = np.unique(x, return_counts=True)
     sums = _distances(places, x)
     least = float(sums.min()) + SAME_DEG * len(x)
-    nearest = sorted((apart(middle, mean_deg), middle) for middle in _middles(places[sums <= least], x, least))
-    if len(nearest) > 1 and nearest[1][0] - nearest[0][0] < SAME_DEG:
+    chosen = sums <= least
+    found = _centres(places[chosen], counts[chosen], x, least)
+    nearest = sorted((apart(centre, mean_deg), centre) for centre in found)
+    if not nearest or len(nearest) > 1 and nearest[1][0] - nearest[0][0] < SAME_DEG:
         return None
     return nearest[0][1]
 
@@ -50,20 +53,22 @@ def _distances(points: Angles, x: Angles) -> Angles:
     return np.asarray(clockwise + anticlockwise)
 
 
-def _middles(best: Angles, x: Angles, least: float) -> list[float]:
-    """Middles of the arcs of best directions: neighbours are one arc where the way between is as good."""
-    if len(best) == 1:
+def _centres(best: Angles, counts: Angles, x: Angles, least: float) -> list[float]:
+    """Mean of each arc of best readings: neighbours are one arc where the way between is as good."""
+    m = len(best)
+    if m == 1:
         return [float(best[0])]
     following = np.concatenate([best[1:], best[:1] + 360.0])
-    between = best + (following - best) / 2
-    joined = _distances(reduced(between), x) <= least
-    middles = []
-    for i in range(len(best)):
+    joined = _distances(reduced(best + (following - best) / 2), x) <= least
+    centres = []
+    for i in range(m):
         if joined[i - 1]:
             continue
-        end, k = best[i], i
-        while joined[k % len(best)] and k < i + len(best) - 1:
-            end = following[k % len(best)] + (360.0 if k >= len(best) else 0.0)
+        total, weight, k = 0.0, float(counts[i]), i
+        while joined[k % m]:
             k += 1
-        middles.append(reduced_one(float(best[i] + (end - best[i]) / 2)))
-    return middles
+            share = float(counts[k % m])
+            total += share * (float(best[k % m]) + 360.0 * (k // m) - float(best[i]))
+            weight += share
+        centres.append(reduced_one(float(best[i]) + total / weight))
+    return centres

@@ -1,0 +1,162 @@
+"""Up to three modes: a mixture of von Mises distributions, chosen by an information criterion."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from itertools import combinations
+from typing import Final
+
+import numpy as np
+from numpy.typing import NDArray
+from scipy import special
+
+from fieldlog.science.angles import Angles, reduced
+from fieldlog.science.concentration import kappa_of
+from fieldlog.science.moments import direction_deg, mean_and_length
+
+FEWEST: Final = 20
+FEWEST_IN_A_MODE: Final = 5
+MOST_PLACES: Final = 1440
+LARGEST_KAPPA: Final = 500.0
+SMALLEST_KAPPA: Final = 1.0
+"""A component flatter than this is a background, not a mode."""
+LEAST_APART_DEG: Final = 30.0
+"""Components nearer than this are the shape of one mode, not two."""
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True)
+class Mode:
+    direction_deg: float
+    kappa: float
+    weight: float
+
+
+@dataclass(frozen=True)
+class Mixture:
+    """Modes by falling weight, and the log-likelihood in radians."""
+
+    modes: list[Mode]
+    log_likelihood: float
+
+    def bic(self, n: int) -> float:
+        """k ln n - 2 ln L with k = 3m - 1 parameters for m modes, none for the uniform."""
+        k = 3 * len(self.modes) - 1 if self.modes else 0
+        return k * math.log(n) - 2 * self.log_likelihood
+
+
+def find_modes(angles_deg: Angles) -> list[Mode] | None:
+    """The modes of a sample, by falling weight: none (uniform), one, two or three.
+
+    `angles_deg`: shape (n,). Returns None below 20 readings: modes are not sought there. A fit with
+    fewer than 5 readings in a mode, a mode flatter than kappa 1 or two modes within 30 deg is not
+    taken. Chosen by BIC (Schwarz 1978).
+    """
+    n = len(angles_deg)
+    if n < FEWEST:
+        return None
+    best, lowest = uniform(n), uniform(n).bic(n)
+    for count in (1, 2, 3):
+        found = fit(angles_deg, count)
+        if (count == 1 or _distinct(found.modes, n)) and found.bic(n) < lowest:
+            best, lowest = found, found.bic(n)
+    return best.modes
+
+
+def uniform(n: int) -> Mixture:
+    """No mode at all."""
+    return Mixture([], -n * math.log(2 * math.pi))
+
+
+def fit(angles_deg: Angles, count: int) -> Mixture:
+    """Maximum-likelihood mixture of `count` von Mises distributions (1 to 3), by EM with exact kappa.
+
+    Deterministic and turning with the sample: the circle is cut at its widest gap and the starts are
+    the pairs or triples of six quantiles; each runs 10 steps, the best two to the end. Kappa is capped
+    at 500, where a component sits on tied readings. Above 1,440 different values the readings are
+    put in classes of 0.25 deg. Source: Banerjee et al. 2005, J. Mach. Learn. Res. 6, 1345-1382.
+    """
+    if count == 1:
+        return _single(angles_deg)
+    x, weight = _places(angles_deg)
+    cut = _after_widest_gap(x)
+    order = np.concatenate([np.arange(cut, len(x)), np.arange(cut)])
+    share = (np.cumsum(weight[order]) - 0.5 * weight[order]) / weight.sum()
+    quantiles = [x[order][np.searchsorted(share, (2 * i + 1) / 12).clip(0, len(x) - 1)] for i in range(6)]
+    theta = np.deg2rad(x)
+    starts = [_start(np.deg2rad(np.array(chosen))) for chosen in combinations(quantiles, count)]
+    tried = [_run(theta, weight, start, 10) for start in starts]
+    ranked = sorted(range(len(tried)), key=lambda i: (-round(tried[i][1], 6), i))[:2]
+    ended = [_run(theta, weight, tried[i][0], 1000) for i in ranked]
+    state, log_likelihood = max(ended, key=lambda end: end[1])
+    modes = [Mode(direction_deg(math.cos(mu), math.sin(mu)), kappa, w) for mu, kappa, w in state.T.tolist()]
+    return Mixture(sorted(modes, key=lambda m: -m.weight), log_likelihood)
+
+
+def _single(angles_deg: Angles) -> Mixture:
+    n = len(angles_deg)
+    mean, r = mean_and_length(angles_deg)
+    kappa = kappa_of(r)
+    kappa = LARGEST_KAPPA if kappa is None else min(kappa, LARGEST_KAPPA)
+    log_likelihood = n * (kappa * (r - 1) - math.log(2 * math.pi * special.i0e(kappa)))
+    return Mixture([Mode(0.0 if mean is None else mean, kappa, 1.0)], log_likelihood)
+
+
+def _places(angles_deg: Angles) -> tuple[Array, Array]:
+    """Different values, ascending, and how often each occurs."""
+    x, counts = np.unique(reduced(angles_deg), return_counts=True)
+    if len(x) > MOST_PLACES:
+        classes = np.floor(x * (MOST_PLACES / 360.0)).astype(int)
+        held = np.bincount(classes, weights=counts, minlength=MOST_PLACES)
+        filled = np.flatnonzero(held)
+        return (filled + 0.5) * (360.0 / MOST_PLACES), held[filled]
+    return x, counts.astype(np.float64)
+
+
+def _after_widest_gap(x: Array) -> int:
+    gaps = np.diff(np.concatenate([x[-1:] - 360.0, x]))
+    return int(np.argmax(gaps >= gaps.max() - 1e-9))
+
+
+def _start(means: Array) -> Array:
+    m = len(means)
+    return np.array([means, np.full(m, 4.0), np.full(m, 1 / m)])
+
+
+def _run(theta: Array, weight: Array, state: Array, steps: int) -> tuple[Array, float]:
+    """EM from a state (rows: mean, kappa, weight) until it moves less than 1e-11."""
+    total = weight.sum()
+    for _ in range(steps):
+        density = _densities(theta, state)
+        share = density / density.sum(axis=1, keepdims=True) * weight[:, None]
+        held = share.sum(axis=0)
+        c = (share * np.cos(theta)[:, None]).sum(axis=0)
+        s = (share * np.sin(theta)[:, None]).sum(axis=0)
+        lengths = np.minimum(np.hypot(c, s) / np.maximum(held, 1e-300), 1.0)
+        kappas = [kappa_of(r) for r in lengths.tolist()]
+        capped = [LARGEST_KAPPA if k is None else min(k, LARGEST_KAPPA) for k in kappas]
+        following = np.array([np.arctan2(s, c), capped, held / total])
+        moved = np.abs(following - state).max()
+        state = following
+        if moved < 1e-11:
+            break
+    return state, float((weight * np.log(_densities(theta, state).sum(axis=1))).sum())
+
+
+def _densities(theta: Array, state: Array) -> Array:
+    mu, kappa, w = state
+    return np.asarray(w * np.exp(kappa * (np.cos(theta[:, None] - mu) - 1)) / (2 * math.pi * special.i0e(kappa)))
+
+
+def _distinct(modes: list[Mode], n: int) -> bool:
+    for i, mode in enumerate(modes):
+        if mode.weight * n < FEWEST_IN_A_MODE or mode.kappa < SMALLEST_KAPPA:
+            return False
+        for other in modes[:i]:
+            if math.cos(math.radians(mode.direction_deg - other.direction_deg)) > math.cos(
+                math.radians(LEAST_APART_DEG)
+            ):
+                return False
+    return True
