@@ -96,6 +96,7 @@ def rounded(declination_deg: float) -> float:
 
 @cache
 def _model(file: str) -> Callable[..., Any]:
-    from pygeomag import GeoMag
+    from pygeomag import GeoMag  # type: ignore[import-untyped]
 
-    return GeoMag(coefficients_file=file).calculate
+    calculate: Callable[..., Any] = GeoMag(coefficients_file=file).calculate
+    return calculate
