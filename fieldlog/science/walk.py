@@ -55,6 +55,22 @@ def longer_than(r: float, n: int) -> float:
     return min(max(p, SMALLEST), 1.0)
 
 
+def longer_than_steps(r: float, steps: Array) -> float:
+    """P(resultant >= r) for a walk with the given step lengths (3 or more) in random directions.
+
+    The same series over the disc that the steps can reach; absolute error below 1e-4 for three
+    steps, 1e-5 for four, 1e-7 from five up.
+    """
+    reach = float(steps.sum())
+    zeros = _zeros_of_j0(MOST_TERMS)
+    product = np.ones(MOST_TERMS)
+    for step in steps:
+        product = product * special.j0(zeros * (step / reach))
+    share = r / reach
+    p = 1 - share * float(np.sum(2 * product / (zeros * special.j1(zeros) ** 2) * special.j1(zeros * share)))
+    return min(max(p, 1e-9), 1.0)
+
+
 @lru_cache(maxsize=64)
 def threshold(n: int, level: float = 0.05) -> float:
     """The mean resultant length that n uniform directions exceed with probability `level`."""
@@ -116,6 +132,7 @@ def _sine_series(n: int) -> tuple[Array, Array]:
     return k, special.j0(k * (math.pi / n)) ** n / k
 
 
+@lru_cache(maxsize=64)
 def _zeros_of_j0(count: int) -> Array:
     """The first zeros of J0: McMahon's expansion, then Newton."""
     b = (np.arange(1, count + 1) - 0.25) * math.pi
