@@ -52,11 +52,16 @@ LEAD = "maren"
 
 @dataclass(frozen=True, eq=False)
 class Site:
-    """A site and the dunes that stand on it. Facings are true, towards; `between` and `within` are SDs."""
+    """A site and the dunes that stand on it. Facings are true, towards; `between` and `within` are SDs.
+
+    `places` stand along the transect; `seed` turns up another set of dunes of the same character.
+    """
 
     key: str
     values: dict[str, object]
     transect_deg: float
+    places: int = 12
+    seed: int = 0
     facing_deg: tuple[float, ...] = ()
     between_deg: float = 9.0
     within_deg: float = 4.0
@@ -75,23 +80,23 @@ SITES = (
          transect_deg=305, facing_deg=(312,), between_deg=10),
     Site("ushkar", _site("Ushkar Fork", -19.9725, 66.0904, 650, "two sets of transverse ridges",
                          "Two sets cross here: read whichever set the transect meets."),
-         transect_deg=20, facing_deg=(248, 358), between_deg=8, dune_type="transverse"),
+         transect_deg=20, places=24, facing_deg=(248, 353), between_deg=8, dune_type="transverse"),
     Site("belq", _site("Belq Stars", -20.0131, 66.0557, 900, "star dunes",
                        "Tall: keep off the lee slopes after noon.", dune_rule="all"),
-         transect_deg=75, facing_deg=(0, 120, 240), within_deg=7, dune_type="star"),
+         transect_deg=75, places=10, seed=5, facing_deg=(0, 120, 240), within_deg=7, dune_type="star"),
     Site("sorrel", _site("Sorrel Gap", -19.9318, 66.1236, 300, "scattered barchans",
                          "Few dunes between two outcrops.", dune_rule="all"),
-         transect_deg=110, facing_deg=(325,), between_deg=12, dune_type="barchan"),
+         transect_deg=110, places=3, facing_deg=(325,), between_deg=12, dune_type="barchan"),
     Site("dovani", _site("Dovani Flats", -20.0418, 66.1189, 600, "barchans on gravel",
                          "Much was written down in a hurry here."),
-         transect_deg=300, facing_deg=(300,), between_deg=6, within_deg=3, dune_type="barchan",
+         transect_deg=300, places=10, facing_deg=(300,), between_deg=6, within_deg=3, dune_type="barchan",
          grains=("medium_sand", "medium_sand", "coarse_sand")),
     Site("hesk", _site("Hesk Pavement", -20.0694, 66.0231, 800, "stone pavement without dunes",
                        "No dunes. A wash crosses it: leave when rain is about.", dune_rule="random_point"),
-         transect_deg=160),
+         transect_deg=160, places=16),
     Site("turnback", _site("Turnback Ridges", -19.9987, 66.1602, 650, "reversing ridges",
                            "Caps turned round by last week's wind.", expected_facing_deg=210.0),
-         transect_deg=215, facing_deg=(207,), between_deg=9, dune_type="reversing"),
+         transect_deg=215, places=9, facing_deg=(207,), between_deg=9, dune_type="reversing"),
     Site("lomar", _site("Lomar Lines", -20.0247, 65.9863, 850, "linear ridges",
                         "Faces stand east or west of the crest, ridge by ridge.", target_half_width_deg=8.0),
          transect_deg=84, facing_deg=(82, 262), between_deg=7, dune_type="linear"),
@@ -118,7 +123,7 @@ def at(day: int, clock: str) -> datetime:
 ROUNDS = (
     Round(at(1, "06:20"), "maren", "tamrel", range(1, 7), 5),
     Round(at(1, "06:25"), "tome", "tamrel", range(7, 13), 5),
-    Round(at(1, "06:30"), "ysolde", "ushkar", range(1, 7), 4),
+    Round(at(1, "06:30"), "ysolde", "ushkar", range(1, 13), 3),
     Round(at(1, "06:40"), "brad", "sorrel", range(1, 4), 4),
     Round(at(1, "06:15"), "samir", "belq", range(1, 6), 6),
     Round(at(1, "15:10"), "maren", "hesk", range(1, 9), 1),
@@ -127,7 +132,7 @@ ROUNDS = (
     Round(at(1, "15:00"), "samir", "belq", range(6, 11), 6),
     Round(at(2, "06:30"), "maren", "turnback", range(1, 6), 5),
     Round(at(2, "06:20"), "tome", "lomar", range(5, 13), 4),
-    Round(at(2, "06:40"), "ysolde", "ushkar", range(7, 13), 4),
+    Round(at(2, "06:40"), "ysolde", "ushkar", range(13, 25), 3),
     Round(at(2, "06:30"), "brad", "dovani", range(5, 8), 5),
     Round(at(2, "06:35"), "samir", "dovani", range(8, 11), 5),
     Round(at(2, "15:20"), "maren", "hesk", range(9, 17), 1),

@@ -10,9 +10,9 @@ from typing import Any
 
 import numpy as np
 from country import LOCAL, NOTES, SEEDED, WITHOUT_FIX, Person, Site
-from pygeomag import GeoMag  # type: ignore[import-untyped]
 from walks import moved
 
+from fieldlog.science.magnetic import Declination, declination
 from fieldlog.sheet.times import wire_time
 
 Key = tuple[str, int, int]
@@ -22,7 +22,6 @@ Values = dict[str, Any]
 SET_BY_DEG = -16.5
 """What the compass that is set for declination is set to."""
 NO_DUNES = "hesk"
-MODEL = "WMM2025"
 
 
 @dataclass(frozen=True)
@@ -42,22 +41,11 @@ def random_for(*what: object) -> np.random.RandomState:
 
 
 @cache
-def _model() -> GeoMag:
-    return GeoMag(coefficients_file="wmm/WMM_2025.COF")
-
-
-def declination_deg(lat: float, lon: float, altitude_m: float, when: datetime) -> float:
-    """Declination of the World Magnetic Model, east positive."""
-    year = when.year + (when.timetuple().tm_yday - 1) / 365
-    return float(_model().calculate(glat=lat, glon=lon, alt=altitude_m / 1000, time=year).d)
-
-
-@cache
 def dune(site: Site, number: int) -> Dune:
     """Dunes stand along the site's transect, a little to its left and right."""
-    random = random_for("dune", site.key, number)
+    random = random_for("dune", site.key, site.seed, number)
     radius = float(str(site.values["radius_m"]))
-    along = radius * (-0.72 + 1.44 * ((number - 1) % 12) / 11 + random.normal(0, 0.02))
+    along = radius * (-0.72 + 1.44 * (number - 1) / (site.places - 1) + random.normal(0, 0.02))
     across = radius * random.uniform(-0.12, 0.12)
     bearing = np.radians(site.transect_deg)
     lat, lon = moved(
@@ -97,7 +85,7 @@ def observe(person: Person, site: Site, key: Key, when: datetime, random: np.ran
     if site.key == NO_DUNES:
         values |= _pavement(number, random)
     else:
-        values |= _bearings(person, site, key, random, declination_deg(lat, lon, place.altitude_m, when))
+        values |= _bearings(person, site, key, random, declination(lat, lon, place.altitude_m, when))
         values |= _sand(site, place, reading, random)
     if key in NOTES:
         values["note"] = NOTES[key]
@@ -115,7 +103,7 @@ def _fix(lat: float, lon: float, altitude_m: float, random: np.random.RandomStat
 
 
 def _bearings(
-    person: Person, site: Site, key: Key, random: np.random.RandomState, declination: float
+    person: Person, site: Site, key: Key, random: np.random.RandomState, here: Declination
 ) -> Values:
     _, number, reading = key
     slip = SEEDED.get(key, "")
@@ -124,7 +112,6 @@ def _bearings(
     crest = facing + random.choice((-90, 90)) + random.normal(0, 6) + (52 if slip == "not_square" else 0)
     facing += 180 if slip == "turned_round" else 0
     looking_up = random.uniform() < 0.15
-    error = SET_BY_DEG if person.north == "set" else declination
     values: Values = {
         "bedform": number, "bedform_order": "dune", "face": face, "dune_type": site.dune_type,
         "instrument": person.instrument, "north": person.north, "how_read": "hand_compass",
@@ -133,13 +120,14 @@ def _bearings(
     if slip == "wrong_north":
         values["north"] = "true"
     elif person.north == "magnetic":
-        values |= {"declination_deg": round(declination, 2), "declination_model": MODEL}
-    read_off = declination - error if person.north == "set" else declination
+        values |= {"declination_deg": here.declination_deg, "declination_model": here.model}
+    # What the card shows is off true north by this much.
+    off = here.declination_deg - SET_BY_DEG if person.north == "set" else here.declination_deg
     return values | {
-        "crest_read_deg": _read(crest - read_off, person.step_deg),
+        "crest_read_deg": _read(crest - off, person.step_deg),
         "crest_place": "arm" if site.dune_type == "star" else "middle",
         "crest_chord_m": int(random.randint(3, 13) * 5),
-        "slip_face_read_deg": _read(facing - read_off + (180 if looking_up else 0), person.step_deg),
+        "slip_face_read_deg": _read(facing - off + (180 if looking_up else 0), person.step_deg),
         "slip_face_looking": "up" if looking_up else "down",
         "slip_face_dip_deg": 41 if slip == "dip" else _dip(random),
         "slip_face_state": "degraded" if random.uniform() < 0.1 else "active",

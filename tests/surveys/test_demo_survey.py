@@ -16,7 +16,9 @@ import pytest
 from flask import Flask
 from sqlalchemy import func, select
 
+from fieldlog.science.summary import summarise
 from fieldlog.sheet.fields import absent_column
+from fieldlog.sheet.sample import samples
 from fieldlog.store.db import db
 from fieldlog.store.photos import PhotoFolder
 from fieldlog.store.rebuild import check
@@ -107,6 +109,51 @@ def test_the_stony_site_answers_none_here(loaded: Loaded) -> None:
         assert row["slip_face_read_deg"] is None
         assert row[absent_column("slip_face_read_deg")] == "none_here"
         assert row["surface_type"] and row["stone_cover_percent"] and row["landform"]
+
+
+@pytest.mark.parametrize(
+    ("site", "measure", "face", "outcomes", "enough"),
+    [
+        ("tamrel", "slip_face_deg", "main", {"one"}, True),
+        ("tamrel", "crest_deg", "main", {"one"}, True),
+        ("ushkar", "slip_face_deg", "main", {"two"}, False),
+        ("belq", "slip_face_deg", "main", {"spread", "three_or_more"}, False),
+        ("sorrel", "slip_face_deg", "main", {"too_few"}, False),
+        ("turnback", "slip_face_deg", "main", {"one"}, True),
+        ("lomar", "slip_face_deg", "main", {"two_opposed"}, False),
+        ("lomar", "crest_deg", "main", {"one"}, True),
+    ],
+)
+def test_each_site_is_of_its_character(
+    loaded: Loaded, site: str, measure: str, face: str, outcomes: set[str], enough: bool
+) -> None:
+    sample = samples(rows(site), measure)[0]
+    assert sample.face == face
+    found = summarise(
+        sample.angles, bedforms=sample.bedforms, axial=measure == "crest_deg", target_deg=10, spacing=False
+    )
+    assert found.outcome in outcomes, found.finding
+    assert found.enough is enough, found.finding
+
+
+def test_reversed_caps_face_the_other_way(loaded: Loaded) -> None:
+    main, caps = samples(rows("turnback"), "slip_face_deg")
+    assert (main.face, caps.face) == ("main", "reversed_cap")
+    facing, cap_facing = (
+        summarise(sample.angles, bedforms=sample.bedforms, spacing=False).mean_direction_deg for sample in (main, caps)
+    )
+    assert facing is not None
+    assert cap_facing is not None
+    assert (facing - cap_facing) % 360 == pytest.approx(180, abs=15)
+
+
+@pytest.mark.parametrize("site", ["tamrel", "sorrel", "turnback"])
+def test_dunes_differ_by_more_than_readings_on_one_dune(loaded: Loaded, site: str) -> None:
+    sample = samples(rows(site), "slip_face_deg")[0]
+    found = summarise(sample.angles, bedforms=sample.bedforms, spacing=False)
+    assert found.between_bedform_sd_deg is not None
+    assert found.within_bedform_sd_deg is not None
+    assert found.between_bedform_sd_deg > found.within_bedform_sd_deg
 
 
 def test_the_walks_are_gpx_and_cover_the_readings_without_a_fix(loaded: Loaded) -> None:
