@@ -2,7 +2,7 @@
 
 Tied readings wreck tests made for continuous angles. These count readings per class instead. Over
 20,000 seeded uniform samples each, n = 5 to 1,000 and 9 to 72 classes, Watson's form rejects 0.046
-to 0.053 at the 5 % level and Kuiper's 0.029 to 0.057.
+to 0.053 at the 5 % level and Kuiper's, to 360 classes, 0.034 to 0.058.
 """
 
 from __future__ import annotations
@@ -13,7 +13,7 @@ from typing import Final
 import numpy as np
 
 from fieldlog.science.angles import Angles, reduced
-from fieldlog.science.uniformity import kuiper_tail, watson_modified
+from fieldlog.science.uniformity import kuiper_modified, kuiper_tail, watson_modified
 from fieldlog.science.walk import SMALLEST
 
 FEWEST_CLASSES: Final = 9
@@ -64,12 +64,14 @@ def watson_p(counts: Angles) -> float:
 def kuiper_p(counts: Angles) -> float:
     """p of Kuiper's V at class borders, with 2 x 0.5826 / sqrt(m) for the maxima between borders.
 
-    The constant is that of a Brownian path seen at intervals (Chernoff 1965; Siegmund 1985), the
-    tail Stephens's asymptotic one.
+    The constant is that of a Brownian path seen at intervals (Chernoff 1965; Siegmund 1985, from
+    memory), shrunk by sqrt(n / (n + m)) because few readings do not fill the classes; that factor
+    was chosen by the level it keeps. Modification and tail as for continuous readings.
     """
-    m, n = len(counts), float(counts.sum())
+    m, n = len(counts), int(counts.sum())
     z = np.cumsum(counts - n / m)
-    return kuiper_tail(float(z.max() - z.min()) / math.sqrt(n) + 2 * 0.5826 / math.sqrt(m))
+    unseen = 2 * 0.5826 / math.sqrt(m) * math.sqrt(n / (n + m))
+    return kuiper_tail(kuiper_modified(float(z.max() - z.min()) / n, n) + unseen)
 
 
 def chi_square(counts: Angles) -> tuple[float, int]:

@@ -151,8 +151,8 @@ def _reach(facts: Facts) -> str:
     have = facts.readings if facts.bedforms is None else facts.bedforms
     if facts.needed is None:
         return f"; {target} is out of reach" if facts.half_width_deg is not None else f"; not enough for {target}"
-    more = counted(facts.needed - have, "reading" if facts.bedforms is None else "dune")
-    return f"; not yet enough for {target}: about {more} more, {facts.needed} in all"
+    more = counted(facts.needed - have, "more reading" if facts.bedforms is None else "more dune")
+    return f"; not yet enough for {target}: about {more}, {facts.needed} in all"
 
 
 def _too_few(facts: Facts, counts: str) -> str:
