@@ -1,1 +1,1 @@
-"""Surveys, their sites, and a survey that comes as a folder of files."""
+"""Surveys and their sites: setting up."""

@@ -1,0 +1,1 @@
+"""Leads, phones, joining codes, one-time links, and who may call what."""

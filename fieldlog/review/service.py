@@ -1,0 +1,266 @@
+"""What the lead's pages are made of, as plain values."""
+
+from __future__ import annotations
+
+from collections import Counter, defaultdict
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, field
+from datetime import date, datetime
+from typing import Any
+from zoneinfo import ZoneInfo
+
+from sqlalchemy import RowMapping, select
+
+from fieldlog.errors import Refusal
+from fieldlog.ledger.entry import Entry
+from fieldlog.review.results import MEASURES, Measure, Result, more_needed, results
+from fieldlog.sheet.check import questions
+from fieldlog.sheet.question import Question
+from fieldlog.store.append import ForeignStoreError
+from fieldlog.store.db import AnySession
+from fieldlog.store.projection import numbered_entries_of
+from fieldlog.store.tables import LedgerEntry, TwoVersions, observations, photos
+from fieldlog.surveys.service import crew_names, site_row, sites_of, survey_row
+
+Row = Mapping[str, Any]
+
+
+@dataclass(frozen=True)
+class SiteLine:
+    """One site on the day sheet: what the chosen readings say, and what everything so far says."""
+
+    site: RowMapping
+    chosen: dict[str, Result | None]
+    so_far: dict[str, Result | None]
+    readings_chosen: int
+    readings: int
+    questions: int
+    two_versions: int
+
+    @property
+    def decision(self) -> str:
+        """The word for what wants a decision, "" where nothing does."""
+        if self.two_versions:
+            return "two versions"
+        if self.questions:
+            return f"{self.questions} question{'s' if self.questions > 1 else ''}"
+        main = self.so_far.get("slip_face_deg") or self.so_far.get("crest_deg")
+        if main is None:
+            return "not read yet" if not self.readings else ""
+        return "" if main.summary.enough else "revisit?"
+
+
+@dataclass(frozen=True)
+class DaySheet:
+    """The day sheet of a survey."""
+
+    survey: RowMapping
+    day: date | None
+    member: str
+    days: list[date]
+    crew: dict[str, str]
+    lines: list[SiteLine]
+    measures: tuple[Measure, ...] = MEASURES
+
+
+@dataclass(frozen=True)
+class SiteSheet:
+    """All about one site."""
+
+    survey: RowMapping
+    site: RowMapping
+    crew: dict[str, str]
+    rows: Sequence[RowMapping]
+    results: dict[str, list[Result]]
+    questions: dict[str, list[Question]]
+    two_versions: dict[str, list[str]]
+    photos: dict[str, list[RowMapping]]
+    measures: tuple[Measure, ...] = MEASURES
+
+
+@dataclass(frozen=True)
+class Change:
+    """One entry of a record's history: who, when, and each field from what to what."""
+
+    seq: int
+    who: str
+    device: str
+    made_at: datetime
+    received_at: datetime
+    fields: list[tuple[str, Any, Any]] = field(default_factory=list)
+
+
+def day_of(when: datetime, zone: str) -> date:
+    """The survey's day of a time."""
+    return when.astimezone(ZoneInfo(zone)).date()
+
+
+def day_sheet(session: AnySession, survey: str, *, day: str = "", member: str = "") -> DaySheet:
+    """The day sheet, for one day and crew member or for all; worst site first.
+
+    `day` is a date as text, "" for the newest day with readings, "all" for no filter.
+    """
+    head = survey_row(session, survey)
+    zone = head["time_zone"]
+    rows = session.execute(select(observations).where(observations.c.survey == survey)
+                           .order_by(observations.c.observed_at, observations.c.record)).mappings().all()
+    days = sorted({day_of(row["observed_at"], zone) for row in rows}, reverse=True)
+    chosen_day = _chosen_day(day, days)
+    by_site: dict[str, list[RowMapping]] = defaultdict(list)
+    for row in rows:
+        by_site[row["site"]].append(row)
+    all_sites = sites_of(session, survey)
+    site_of = {row["record"]: row["site"] for row in rows}
+    asked = Counter(site_of[question.record] for question in questions(rows, sites=all_sites, time_zone=zone))
+    doubtful = _two_versions_by_site(session, survey, site_of)
+    lines = []
+    for site in all_sites:
+        if site["crossed_out"]:
+            continue
+        everything = by_site.get(site["record"], [])
+        chosen = [
+            row for row in everything
+            if (chosen_day is None or day_of(row["observed_at"], zone) == chosen_day)
+            and (not member or row["made_by"] == member)
+        ]
+        lines.append(SiteLine(
+            site=site,
+            chosen={m.column: _first(results(head, site, chosen, m)) for m in MEASURES},
+            so_far={m.column: _first(results(head, site, everything, m)) for m in MEASURES},
+            readings_chosen=sum(not row["crossed_out"] for row in chosen),
+            readings=sum(not row["crossed_out"] for row in everything),
+            questions=asked[site["record"]],
+            two_versions=doubtful[site["record"]],
+        ))
+    lines.sort(key=_worst_first)
+    return DaySheet(head, chosen_day, member, days, crew_names(session, survey), lines)
+
+
+def _chosen_day(text: str, days: list[date]) -> date | None:
+    if text == "all":
+        return None
+    if not text:
+        return days[0] if days else None
+    try:
+        return date.fromisoformat(text)
+    except ValueError as error:
+        raise Refusal(f"{text!r} is not a day", "day", "Write it like 2026-07-08") from error
+
+
+def _first(found: list[Result]) -> Result | None:
+    return found[0] if found else None
+
+
+def _worst_first(line: SiteLine) -> tuple[int, float, str]:
+    """Two versions, then questions, then no result, then the most dunes still needed; enough comes last."""
+    main = line.so_far.get("slip_face_deg") or line.so_far.get("crest_deg")
+    if line.two_versions:
+        rank = 0
+    elif line.questions:
+        rank = 1
+    elif main is None:
+        rank = 2
+    else:
+        rank = 4 if main.summary.enough else 3
+    needed = more_needed(main) if main else None
+    return rank, -(needed if needed is not None else 1e9), line.site["name"]
+
+
+def _two_versions_by_site(session: AnySession, survey: str, site_of: Mapping[str, str]) -> Counter[str]:
+    found: Counter[str] = Counter()
+    for kind, record in session.execute(
+        select(TwoVersions.kind, TwoVersions.record).where(TwoVersions.survey == survey)
+    ):
+        found[record if kind == "site" else site_of.get(record, "")] += 1
+    return found
+
+
+def site_sheet(session: AnySession, survey: str, record: str) -> SiteSheet:
+    """All of one site."""
+    head = survey_row(session, survey)
+    site = site_row(session, survey, record)
+    rows = session.execute(
+        select(observations)
+        .where(observations.c.survey == survey, observations.c.site == record)
+        .order_by(observations.c.observed_at, observations.c.record)
+    ).mappings().all()
+    asked: dict[str, list[Question]] = defaultdict(list)
+    for question in questions(rows, sites=[site], time_zone=head["time_zone"]):
+        asked[question.record].append(question)
+    doubtful: dict[str, list[str]] = defaultdict(list)
+    records = {row["record"] for row in rows}
+    for name, fieldname in session.execute(
+        select(TwoVersions.record, TwoVersions.field).where(TwoVersions.survey == survey)
+    ):
+        if name in records:
+            doubtful[name].append(fieldname)
+    return SiteSheet(
+        head, site, crew_names(session, survey), rows,
+        {m.column: results(head, site, rows, m) for m in MEASURES},
+        asked, doubtful, photos_of(session, survey, records),
+    )
+
+
+def photos_of(session: AnySession, survey: str, records: set[str]) -> dict[str, list[RowMapping]]:
+    found: dict[str, list[RowMapping]] = defaultdict(list)
+    rows = session.execute(
+        select(photos).where(photos.c.survey == survey, photos.c.crossed_out.is_(None)).order_by(photos.c.made_at)
+    ).mappings()
+    for row in rows:
+        if row["observation"] in records:
+            found[row["observation"]].append(row)
+    return found
+
+
+def history(session: AnySession, survey: str, record: str) -> list[Change]:
+    """The entries of a record from the ledger, oldest first, as changes from what stood before."""
+    numbered = numbered_entries_of(session, survey, [record]).get(record, [])
+    if not numbered:
+        raise ForeignStoreError("there is no such record in this survey")
+    names = crew_names(session, survey)
+    received = dict(
+        session.execute(
+            select(LedgerEntry.seq, LedgerEntry.received_at).where(
+                LedgerEntry.survey == survey, LedgerEntry.record == record
+            )
+        ).tuples().all()
+    )
+    by_name = {entry.name: entry for _, entry in numbered}
+    changes = []
+    for seq, entry in numbered:
+        fields = [(name, _before(entry, name, by_name), value) for name, value in entry.values.items()]
+        by = entry.body["by"]
+        changes.append(Change(seq, names.get(by, by), entry.device, _made_at(entry), received[seq], fields))
+    return changes
+
+
+def _made_at(entry: Entry) -> datetime:
+    return datetime.fromisoformat(entry.body["made_at"].replace("Z", "+00:00"))
+
+
+def _before(entry: Entry, name: str, by_name: Mapping[str, Entry]) -> Any:
+    """What the entry replaced: the value of the newest entry that it lists over its field."""
+    replaced = [by_name[other] for other in entry.over.get(name, ()) if other in by_name]
+    return max(replaced, key=lambda other: other.order).values.get(name) if replaced else None
+
+
+def observation_row(session: AnySession, survey: str, record: str) -> RowMapping:
+    """One observation."""
+    found = session.execute(
+        select(observations).where(observations.c.survey == survey, observations.c.record == record)
+    ).mappings().first()
+    if found is None:
+        raise ForeignStoreError("there is no such observation in this survey")
+    return found
+
+
+def versions_of_record(session: AnySession, survey: str, record: str) -> dict[str, list[Any]]:
+    """Field -> its versions, the provisional one first."""
+    return {
+        name: [version["value"] for version in versions]
+        for name, versions in session.execute(
+            select(TwoVersions.field, TwoVersions.versions).where(
+                TwoVersions.survey == survey, TwoVersions.record == record
+            )
+        )
+    }

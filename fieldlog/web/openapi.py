@@ -1,0 +1,119 @@
+"""The description of /api/v1, drawn from the wire schemas."""
+
+from __future__ import annotations
+
+from functools import cache
+from typing import Any
+
+from apispec import APISpec
+from apispec.ext.marshmallow import MarshmallowPlugin
+from marshmallow import Schema, fields
+
+from fieldlog import __version__
+from fieldlog.handover import schema as handover
+from fieldlog.people import schema as people
+from fieldlog.sheet.schema import schema_for
+from fieldlog.sheet.subjects import SHEETS
+
+JSON = "application/json"
+
+
+class ProblemSchema(Schema):
+    """RFC 9457 problem details, with how to mend it."""
+
+    type = fields.String(required=True)
+    title = fields.String(required=True)
+    status = fields.Integer(required=True)
+    detail = fields.String()
+    where = fields.String()
+    mend = fields.String()
+
+
+class HealthSchema(handover.StoreHeadSchema):
+    """The store answers."""
+
+    status = fields.String(required=True)
+    app = fields.String(required=True)
+
+
+def _body(name: str) -> dict[str, Any]:
+    return {"required": True, "content": {JSON: {"schema": name}}}
+
+
+def _answers(good: dict[int, str | None]) -> dict[str, Any]:
+    found: dict[str, Any] = {}
+    for code, name in good.items():
+        found[str(code)] = {"description": "Done", **({"content": {JSON: {"schema": name}}} if name else {})}
+    found["default"] = {"description": "Refused", "content": {"application/problem+json": {"schema": "Problem"}}}
+    return found
+
+
+def _parameter(name: str, where: str = "path", kind: str = "string") -> dict[str, Any]:
+    return {"name": name, "in": where, "required": where == "path", "schema": {"type": kind}}
+
+
+@cache
+def description() -> dict[str, Any]:
+    """OpenAPI 3.0."""
+    spec = APISpec(
+        title="Ergbook", version=__version__, openapi_version="3.0.3", plugins=[MarshmallowPlugin()],
+        info={"description": "Handing over between phones and base."},
+    )
+    spec.components.security_scheme("phone", {"type": "http", "scheme": "bearer"})
+    spec.components.security_scheme("lead", {"type": "apiKey", "in": "cookie", "name": "session"})
+    for name, schema in (
+        ("Problem", ProblemSchema), ("Health", HealthSchema), ("Look", people.LookSchema),
+        ("LookAnswer", people.LookAnswerSchema), ("Join", people.JoinSchema), ("JoinAnswer", people.JoinAnswerSchema),
+        ("Batch", handover.BatchSchema), ("BatchAnswer", handover.BatchAnswerSchema),
+        ("Changes", handover.ChangesSchema), ("PhotoAnswer", handover.PhotoAnswerSchema),
+    ):
+        spec.components.schema(name, schema=schema)
+    for kind in SHEETS:
+        spec.components.schema(f"{kind.capitalize()}Values", schema=schema_for(kind))
+    survey = [_parameter("survey")]
+    photo = [*survey, _parameter("sha256")]
+    phone = [{"phone": []}]
+    either = [{"phone": []}, {"lead": []}]
+    spec.path("/api/v1/health", operations={"get": {"responses": _answers({200: "Health"})}})
+    spec.path("/api/v1/openapi.json", operations={"get": {"responses": _answers({200: None})}})
+    spec.path(
+        "/api/v1/joining/look",
+        operations={"post": {"requestBody": _body("Look"), "responses": _answers({200: "LookAnswer"})}},
+    )
+    spec.path(
+        "/api/v1/joining",
+        operations={"post": {"requestBody": _body("Join"), "responses": _answers({201: "JoinAnswer"})}},
+    )
+    spec.path(
+        "/api/v1/surveys/{survey}/entries",
+        operations={
+            "post": {
+                "parameters": survey, "security": phone, "requestBody": _body("Batch"),
+                "responses": _answers({200: "BatchAnswer"}),
+            }
+        },
+    )
+    spec.path(
+        "/api/v1/surveys/{survey}/changes",
+        operations={
+            "get": {
+                "parameters": [*survey, _parameter("after", "query", "integer"), _parameter("limit", "query", "integer"),
+                               _parameter("own", "query", "boolean")],
+                "security": phone, "responses": _answers({200: "Changes"}),
+            }
+        },
+    )
+    image = {"content": {"image/*": {"schema": {"type": "string", "format": "binary"}}}}
+    spec.path(
+        "/api/v1/surveys/{survey}/photos/{sha256}",
+        operations={
+            "head": {"parameters": photo, "security": either, "responses": _answers({200: None})},
+            "get": {"parameters": photo, "security": either, "responses": _answers({200: None})},
+            "put": {
+                "parameters": photo, "security": phone, "requestBody": {"required": True, **image},
+                "responses": _answers({200: "PhotoAnswer", 201: "PhotoAnswer"}),
+            },
+        },
+    )
+    described: dict[str, Any] = spec.to_dict()
+    return described
