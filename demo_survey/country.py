@@ -180,12 +180,12 @@ PICTURES = {
 SEEDED = {
     ("dovani", 2, 2): "dip",
     ("dovani", 3, 1): "not_square",
-    ("dovani", 4, 3): "turned_round",
+    ("dovani", 4, 3): "opposed",
     ("dovani", 6, 2): "repeated",
-    ("dovani", 7, 0): "far_away",
+    ("dovani", 7, 0): "far_from_site",
     **{("dovani", dune, reading): "wrong_north" for dune in (8, 9, 10) for reading in range(5)},
 }
-"""Slips put in on purpose: what a check should ask about."""
+"""Slips put in on purpose: the code of the question that a check should ask."""
 
 EDITS = (
     (at(1, "19:05"), "tome", ("tamrel", 8, 1), {"grain_class": "medium_sand"}),

@@ -78,7 +78,7 @@ def observe(person: Person, site: Site, key: Key, when: datetime, random: np.ran
     place = dune(site, number)
     lat, lon = moved(place.lat, place.lon, random.uniform(-22, 22), random.uniform(-22, 22))
     values: Values = {"observed_at": wire_time(when)}
-    if SEEDED.get(key) == "far_away":
+    if SEEDED.get(key) == "far_from_site":
         lat += 0.05
     if key not in WITHOUT_FIX:
         values |= _fix(lat, lon, place.altitude_m, random)
@@ -110,17 +110,15 @@ def _bearings(
     face, which = face_of(site, reading)
     facing = dune(site, number).facing_deg[which] + random.normal(0, site.within_deg)
     crest = facing + random.choice((-90, 90)) + random.normal(0, 6) + (52 if slip == "not_square" else 0)
-    facing += 180 if slip == "turned_round" else 0
+    facing += 180 if slip == "opposed" else 0
     looking_up = random.uniform() < 0.15
     values: Values = {
         "bedform": number, "bedform_order": "dune", "face": face, "dune_type": site.dune_type,
         "instrument": person.instrument, "north": person.north, "how_read": "hand_compass",
-        "reading_step_deg": person.step_deg,
+        "reading_step_deg": person.step_deg, "declination_deg": here.declination_deg, "declination_model": here.model,
     }
     if slip == "wrong_north":
         values["north"] = "true"
-    elif person.north == "magnetic":
-        values |= {"declination_deg": here.declination_deg, "declination_model": here.model}
     # What the card shows is off true north by this much.
     off = here.declination_deg - SET_BY_DEG if person.north == "set" else here.declination_deg
     return values | {

@@ -82,14 +82,14 @@ class Demo:
             random = random_for("round", round_.site, round_.start)
             when, stops = round_.start, []
             for number in round_.dunes:
-                before: Values = {}
+                before, said = Values(), when
                 for reading in range(round_.readings):
                     key = (site.key, number, reading)
                     values = observe(person, site, key, when, random)
                     if SEEDED.get(key) == "repeated":
-                        when -= timedelta(seconds=70)
+                        when = said + timedelta(seconds=25)
                         values |= {name: before[name] for name in READ} | {"observed_at": wire_time(when)}
-                    before = values
+                    before, said = values, when
                     self.plan.append((when, partial(self._observe, person, key, values, when)))
                     place = dune(site, number)
                     stops.append((values.get("lat_deg", place.lat), values.get("lon_deg", place.lon),

@@ -49,8 +49,8 @@ class Loaded:
 
 
 @dataclass(frozen=True)
-class _Folder:
-    """A folder that has been read and found whole: runs of one device's entries, and photos by hash."""
+class SurveyFolder:
+    """A folder that has been read and found whole: (device, its consecutive entries), and photos by hash."""
 
     survey: str
     runs: list[tuple[str, list[Prepared]]]
@@ -63,7 +63,7 @@ def load_ledger(session: AnySession, folder: Path, photos_store: PhotoStore) -> 
     Everything is read and checked first. LedgerFileError where the folder is damaged, or where the
     store holds other entries under the same names.
     """
-    read = _read(folder)
+    read = read_folder(folder)
     photos_new = 0
     for sha256, data in read.photos.items():
         if photos_store.size(read.survey, sha256) != len(data):
@@ -83,7 +83,8 @@ def load_ledger(session: AnySession, folder: Path, photos_store: PhotoStore) -> 
     return Loaded(read.survey, entries, entries_new, len(read.photos), photos_new)
 
 
-def _read(folder: Path) -> _Folder:
+def read_folder(folder: Path) -> SurveyFolder:
+    """Read a survey's folder and check all of it; LedgerFileError says what is damaged, and where."""
     manifest = _manifest(folder)
     survey = manifest["survey"]
     lines = _bytes(folder / LEDGER).replace(b"\r\n", b"\n").removesuffix(b"\n").split(b"\n")
@@ -93,7 +94,7 @@ def _read(folder: Path) -> _Folder:
     if hashlib.sha256(b"\n".join(lines)).hexdigest() != manifest["ledger_sha256"]:
         raise LedgerFileError(f"does not match its hash in {MANIFEST}", LEDGER, _AGAIN)
     runs = list(_runs(rows, survey, manifest["base_device"]))
-    return _Folder(survey, runs, dict(_photos(folder, manifest["photos"])))
+    return SurveyFolder(survey, runs, dict(_photos(folder, manifest["photos"])))
 
 
 def _bytes(path: Path) -> bytes:

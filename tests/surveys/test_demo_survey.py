@@ -7,7 +7,9 @@ import json
 import shutil
 import subprocess
 import sys
+from collections import defaultdict
 from collections.abc import Callable, Iterator
+from functools import cache
 from pathlib import Path
 from typing import Any
 
@@ -16,8 +18,13 @@ import pytest
 from flask import Flask
 from sqlalchemy import func, select
 
+from fieldlog.ledger.entry import Entry
+from fieldlog.ledger.merge import merge
+from fieldlog.ledger.project import project
 from fieldlog.science.summary import summarise
+from fieldlog.sheet.check import questions
 from fieldlog.sheet.fields import absent_column
+from fieldlog.sheet.question import Question
 from fieldlog.sheet.sample import samples
 from fieldlog.store.db import db
 from fieldlog.store.photos import PhotoFolder
@@ -33,7 +40,12 @@ from fieldlog.store.tables import (
     tracks,
 )
 from fieldlog.store.transaction import write
-from fieldlog.surveys.ledger_file import LedgerFileError, Loaded, load_ledger
+from fieldlog.surveys.ledger_file import (
+    LedgerFileError,
+    Loaded,
+    load_ledger,
+    read_folder,
+)
 
 FOLDER = Path(__file__).resolve().parents[2] / "demo_survey"
 CAST = json.loads((FOLDER / "cast.json").read_text(encoding="utf-8"))
@@ -50,9 +62,22 @@ def loaded(app: Flask, tmp_path: Path) -> Iterator[Loaded]:
         yield load(FOLDER, tmp_path / "photos")
 
 
+@cache
+def said() -> dict[str, list[dict[str, Any]]]:
+    """Kind -> the rows that the folder's ledger adds up to, without a database."""
+    entries: dict[str, list[Entry]] = defaultdict(list)
+    for device, run in read_folder(FOLDER).runs:
+        for item in run:
+            entry = item.entry(device)
+            entries[entry.record].append(entry)
+    made: dict[str, list[dict[str, Any]]] = defaultdict(list)
+    for of_record in entries.values():
+        made[of_record[0].kind].append(project(merge(of_record)))
+    return made
+
+
 def rows(site: str) -> list[dict[str, Any]]:
-    found = db.session.execute(select(observations).where(observations.c.site == CAST["sites"][site]))
-    return [dict(row) for row in found.mappings()]
+    return [row for row in said()["observation"] if row["site"] == CAST["sites"][site]]
 
 
 def test_the_files_are_what_the_script_makes() -> None:
@@ -92,10 +117,8 @@ def test_it_holds_what_a_survey_holds(loaded: Loaded) -> None:
     assert (doubtful.field, len(doubtful.versions)) == ("grain_class", 2)
 
 
-def test_five_phones_read_on_three_days_and_only_forwards(loaded: Loaded) -> None:
-    found = db.session.execute(
-        select(observations.c.made_on, observations.c.observed_at).order_by(observations.c.first_seq)
-    ).all()
+def test_five_phones_read_on_three_days_and_only_forwards() -> None:
+    found = [(row["made_on"], row["observed_at"]) for row in said()["observation"]]
     assert len({device for device, _ in found}) == 5
     assert len({when.date() for _, when in found}) == 3
     for device in {device for device, _ in found}:
@@ -103,7 +126,7 @@ def test_five_phones_read_on_three_days_and_only_forwards(loaded: Loaded) -> Non
         assert times == sorted(times)
 
 
-def test_the_stony_site_answers_none_here(loaded: Loaded) -> None:
+def test_the_stony_site_answers_none_here() -> None:
     for row in rows("hesk"):
         assert row["bedform"] is None
         assert row["slip_face_read_deg"] is None
@@ -125,7 +148,7 @@ def test_the_stony_site_answers_none_here(loaded: Loaded) -> None:
     ],
 )
 def test_each_site_is_of_its_character(
-    loaded: Loaded, site: str, measure: str, face: str, outcomes: set[str], enough: bool
+    site: str, measure: str, face: str, outcomes: set[str], enough: bool
 ) -> None:
     sample = samples(rows(site), measure)[0]
     assert sample.face == face
@@ -136,7 +159,7 @@ def test_each_site_is_of_its_character(
     assert found.enough is enough, found.finding
 
 
-def test_reversed_caps_face_the_other_way(loaded: Loaded) -> None:
+def test_reversed_caps_face_the_other_way() -> None:
     main, caps = samples(rows("turnback"), "slip_face_deg")
     assert (main.face, caps.face) == ("main", "reversed_cap")
     facing, cap_facing = (
@@ -148,7 +171,7 @@ def test_reversed_caps_face_the_other_way(loaded: Loaded) -> None:
 
 
 @pytest.mark.parametrize("site", ["tamrel", "sorrel", "turnback"])
-def test_dunes_differ_by_more_than_readings_on_one_dune(loaded: Loaded, site: str) -> None:
+def test_dunes_differ_by_more_than_readings_on_one_dune(site: str) -> None:
     sample = samples(rows(site), "slip_face_deg")[0]
     found = summarise(sample.angles, bedforms=sample.bedforms, spacing=False)
     assert found.between_bedform_sd_deg is not None
@@ -156,7 +179,25 @@ def test_dunes_differ_by_more_than_readings_on_one_dune(loaded: Loaded, site: st
     assert found.between_bedform_sd_deg > found.within_bedform_sd_deg
 
 
-def test_the_walks_are_gpx_and_cover_the_readings_without_a_fix(loaded: Loaded) -> None:
+def asked() -> list[Question]:
+    return questions(said()["observation"], sites=said()["site"], time_zone="Etc/GMT-4")
+
+
+def test_every_seeded_slip_is_asked_about() -> None:
+    told: set[tuple[str, str]] = set()
+    for question in asked():
+        # An instrument's day is asked about once, for all its readings.
+        concerned = question.other_records if question.code == "wrong_north" else ()
+        told |= {(record, question.code) for record in (question.record, *concerned)}
+    assert set(CAST["seeded"].items()) <= told
+
+
+def test_hardly_any_other_reading_draws_a_question() -> None:
+    unseeded = {question.record for question in asked()} - set(CAST["seeded"])
+    assert len(unseeded) <= 0.02 * (len(said()["observation"]) - len(CAST["seeded"]))
+
+
+def test_the_walks_are_gpx_and_cover_the_readings_without_a_fix() -> None:
     walked = gpxpy.parse((FOLDER / "tracks" / "tome-8-july.gpx").read_text(encoding="utf-8"))
     bounds = walked.get_time_bounds()
     assert bounds.start_time and bounds.end_time
@@ -165,7 +206,7 @@ def test_the_walks_are_gpx_and_cover_the_readings_without_a_fix(loaded: Loaded) 
     for row in unplaced:
         assert bounds.start_time < row["observed_at"] < bounds.end_time
     listed = gpxpy.parse((FOLDER / "sites.gpx").read_text(encoding="utf-8"))
-    assert {point.name for point in listed.waypoints} == set(db.session.scalars(select(sites.c.name)))
+    assert {point.name for point in listed.waypoints} == {site["name"] for site in said()["site"]}
 
 
 def _cut_last_line(folder: Path) -> None:
@@ -195,29 +236,32 @@ def _swap(name: str, old: bytes, new: bytes) -> Callable[[Path], None]:
         (lambda folder: (folder / "ledger.jsonl").unlink(), "cannot be read"),
     ],
 )
-def test_a_damaged_folder_is_refused_and_nothing_is_written(
-    app: Flask, tmp_path: Path, damage: Callable[[Path], None], told: str
-) -> None:
+def test_a_damaged_folder_is_refused(tmp_path: Path, damage: Callable[[Path], None], told: str) -> None:
     folder = tmp_path / "demo"
     shutil.copytree(FOLDER, folder)
     damage(folder)
+    with pytest.raises(LedgerFileError, match=told) as caught:
+        read_folder(folder)
+    assert caught.value.mend
+
+
+def test_a_damaged_folder_leaves_nothing_behind(app: Flask, tmp_path: Path) -> None:
+    folder = tmp_path / "demo"
+    shutil.copytree(FOLDER, folder)
+    (folder / "photos" / "tamrel-ridge-4.jpg").write_bytes(b"no photo")
     with app.app_context():
-        with pytest.raises(LedgerFileError, match=told) as caught:
+        with pytest.raises(LedgerFileError):
             load(folder, tmp_path / "photos")
-        assert caught.value.mend
         assert db.session.scalar(select(func.count()).select_from(SurveyCounter)) == 0
     assert not (tmp_path / "photos").exists()
 
 
-def test_other_line_endings_are_the_same_ledger(app: Flask, tmp_path: Path) -> None:
+def test_other_line_endings_are_the_same_ledger(tmp_path: Path) -> None:
     folder = tmp_path / "demo"
     shutil.copytree(FOLDER, folder)
     ledger = folder / "ledger.jsonl"
     ledger.write_bytes(ledger.read_bytes().replace(b"\n", b"\r\n"))
-    with app.app_context():
-        first = load(FOLDER, tmp_path / "photos")
-        second = load(folder, tmp_path / "photos")
-    assert (second.entries, second.entries_new) == (first.entries, 0)
+    assert read_folder(folder) == read_folder(FOLDER)
 
 
 def test_another_entry_under_a_known_name_is_refused(loaded: Loaded, tmp_path: Path) -> None:
