@@ -121,8 +121,13 @@ def rose(
     drawing.petals(petals, len(readings_deg))
     drawing.ground(summary.threshold_resultant if len(readings_deg) else None)
     drawing.letters(expected_deg)
+    # A hollow arrow would blank the dots that it lies on, a solid one would be broken up by them.
+    solid = shows_direction(summary)
+    if not solid:
+        drawing.mean(summary, "rose-mean-hollow")
     rings = drawing.dots(readings_deg, crossed_out_deg, frozenset(marked))
-    drawing.mean(summary)
+    if solid:
+        drawing.mean(summary, "rose-mean")
     drawing.shapes.extend(rings)
     drawing.outside(summary, expected_deg)
     drawing.label(summary, len(readings_deg) > 0)
@@ -210,11 +215,10 @@ class _Drawing:
                     rings.append(marks.circle("rose-marked", place, dot * 1.9))
         return rings
 
-    def mean(self, summary: Summary) -> None:
+    def mean(self, summary: Summary, role: str) -> None:
         direction, length = summary.mean_direction_deg, summary.resultant_length
         if direction is None or length is None:
             return
-        role = "rose-mean" if shows_direction(summary) else "rose-mean-hollow"
         draw = marks.bar if self.axial else marks.arrow
         self.shapes.append(draw(role, self.middle, direction, self.rim * min(length, 1.0), self.rim))
 

@@ -13,6 +13,7 @@ from hypothesis import strategies as st
 from mirror import assert_same, javascript, vectors
 
 from fieldlog.draw.rose import Rose, RoseError, petal_counts, rose
+from fieldlog.science.summary import summarise
 
 CASES = vectors("rose")
 NOTHING = {
@@ -138,3 +139,16 @@ def test_nothing_is_drawn_outside_the_square(readings: list[float], axial: bool,
 def test_a_bearing_that_is_no_number_is_refused_by_position(value: float) -> None:
     with pytest.raises(RoseError, match="reading 2"):
         rose([1.0, value], summary(), axial=False, size=320)
+
+
+def test_the_arrow_and_the_ring_are_those_of_the_dunes_where_dunes_count() -> None:
+    readings = [200.0, 202, 204, 206, 208, 210, 214, 216, 218, 220, 230, 232]
+    dunes = ["a", "a", "a", "b", "b", "c", "c", "d", "d", "e", "f", "f"]
+    found = summarise(readings, bedforms=dunes, subject="Slip faces")
+    picture = rose(readings, found, axial=False, size=320)
+    ring, rim = of(picture, "rose-threshold")[0], of(picture, "rose-rim")[0]
+    assert found.threshold_resultant is not None
+    assert ring["r"] == pytest.approx(found.threshold_resultant * rim["r"])
+    assert found.threshold_resultant > 0.6, "six dunes need more than twelve readings would"
+    assert picture.title == found.finding
+    assert len(of(picture, "rose-dot")) == 12

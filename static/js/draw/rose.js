@@ -88,8 +88,11 @@ export function rose(readingsDeg, summary, { axial, size, crossedOutDeg = [], ex
   drawing.petals(petals, n);
   drawing.ground(n ? summary.threshold_resultant : null);
   drawing.letters(expectedDeg);
+  // A hollow arrow would blank the dots that it lies on, a solid one would be broken up by them.
+  const solid = showsDirection(summary);
+  if (!solid) drawing.mean(summary, 'rose-mean-hollow');
   const rings = drawing.dots(readingsDeg, crossedOutDeg, new Set(marked));
-  drawing.mean(summary);
+  if (solid) drawing.mean(summary, 'rose-mean');
   drawing.shapes.push(...rings);
   drawing.outside(summary, expectedDeg);
   drawing.label(summary, n > 0);
@@ -230,11 +233,13 @@ class Drawing {
     return rings;
   }
 
-  /** @param {RoseSummary} summary */
-  mean(summary) {
+  /**
+   * @param {RoseSummary} summary
+   * @param {string} role
+   */
+  mean(summary, role) {
     const { mean_direction_deg: direction, resultant_length: length } = summary;
     if (direction === null || length === null) return;
-    const role = showsDirection(summary) ? 'rose-mean' : 'rose-mean-hollow';
     const draw = this.axial ? bar : arrow;
     this.shapes.push(draw(role, this.middle, direction, this.rim * Math.min(length, 1), this.rim));
   }
