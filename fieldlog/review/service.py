@@ -39,15 +39,16 @@ class SiteLine:
 
     @property
     def decision(self) -> str:
-        """The word for what wants a decision, "" where nothing does."""
-        if self.two_versions:
-            return "two versions"
+        """The words for what wants a decision, "" where nothing does."""
+        words = ["two versions"] if self.two_versions else []
         if self.questions:
-            return f"{self.questions} question{'s' if self.questions > 1 else ''}"
+            words.append(f"{self.questions} question{'s' if self.questions > 1 else ''}")
         main = self.so_far.get("slip_face_deg") or self.so_far.get("crest_deg")
-        if main is None:
-            return "not read yet" if not self.readings else ""
-        return "" if main.summary.enough else "revisit?"
+        if not self.readings:
+            words.append("not read yet")
+        elif main is not None and not main.summary.enough:
+            words.append("revisit?")
+        return ", ".join(words)
 
 
 @dataclass(frozen=True)

@@ -72,6 +72,13 @@ def field_value(field: Field, value: Any, absent: str | None = None) -> str:
     return f"{value} {field.unit}".strip()
 
 
+def plain(value: Any) -> str:
+    """A value as an input holds it: no trailing zeros, nothing for nothing."""
+    if value is None:
+        return ""
+    return f"{value:.10g}" if isinstance(value, float) else str(value)
+
+
 def said_value(field: Field | None, value: Any) -> str:
     """A value as an entry says it."""
     if isinstance(value, dict) and "absent" in value:
@@ -97,7 +104,7 @@ def needed(result: Any) -> str:
 
 def set_up_formats(app: Flask) -> None:
     """Make the formats known to the templates."""
-    for function in (bearing, degrees, probability, ratio, number, local_time, field_value, said_value):
+    for function in (bearing, degrees, probability, ratio, number, local_time, field_value, plain, said_value):
         app.jinja_env.filters[function.__name__] = function
     app.jinja_env.globals.update(
         token=_token, needed=needed, vocabularies=VOCABULARIES, site_sheet=SITE, observation_sheet=OBSERVATION,

@@ -14,7 +14,7 @@ from fieldlog.ledger.names import new_device
 from fieldlog.store.append import append
 from fieldlog.store.db import db
 from fieldlog.store.transaction import write
-from tests.store.test_append import Survey, send
+from tests.factories import Survey, send
 
 
 @pytest.fixture

@@ -1,0 +1,1 @@
+"""The application: assembling it, its gate, its headers, its errors."""
