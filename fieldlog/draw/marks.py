@@ -56,7 +56,7 @@ def petal(role: str, middle: float, bearing_deg: float, half_width_deg: float, r
     return {"kind": "path", "role": role, "commands": commands}
 
 
-def arc(role: str, middle: float, low_deg: float, span_deg: float, radius: float, cap: float) -> Shape:
+def arc(role: str, middle: float, low_deg: float, span_deg: float, radius: float, *, cap: float) -> Shape:
     """An arc clockwise from `low_deg`, a short cap across each end."""
     high = low_deg + span_deg
     commands = [

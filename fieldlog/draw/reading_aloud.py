@@ -32,6 +32,7 @@ def spoken(
     summary: Any,
     petals: Petals,
     axial: bool,
+    *,
     crossed_out_deg: Sequence[float],
     expected_deg: float | None,
 ) -> str:

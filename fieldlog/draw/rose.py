@@ -131,7 +131,7 @@ def rose(
     drawing.shapes.extend(rings)
     drawing.outside(summary, expected_deg)
     drawing.label(summary, len(readings_deg) > 0)
-    text = spoken(readings_deg, summary, petals, axial, crossed_out_deg, expected_deg)
+    text = spoken(readings_deg, summary, petals, axial, crossed_out_deg=crossed_out_deg, expected_deg=expected_deg)
     return Rose(size, layout.detail, drawing.shapes, title(len(readings_deg), summary, axial), text)
 
 
@@ -229,7 +229,7 @@ class _Drawing:
             span = turn(high - low, 180.0 if self.axial else 360.0)
             for end in self.ends:
                 self.shapes.append(marks.arc("rose-interval", self.middle, low + end, span,
-                                             self.rim + distance * self.scale, cap * self.scale))
+                                             self.rim + distance * self.scale, cap=cap * self.scale))
         if self.layout.mode:
             for mode in summary.modes or ():
                 for end in self.ends:

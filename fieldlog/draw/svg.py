@@ -45,17 +45,18 @@ def svg(rose: Rose, *, identifier: str = "", classes: str = "") -> str:
     """
     prefix = escape(identifier or "rose")
     size = number(rose.size)
-    parts = [
+    head = (
         f'<svg xmlns="http://www.w3.org/2000/svg" class="{escape(f"rose rose-{rose.detail} {classes}".strip())}" '
         f'viewBox="0 0 {size} {size}" width="{size}" height="{size}" role="img" '
         f'aria-labelledby="{prefix}-title {prefix}-text">'
         f'<title id="{prefix}-title">{escape(rose.title)}</title>'
         f'<desc id="{prefix}-text">{escape(rose.text)}</desc>'
-    ]
+    )
+    groups: list[str] = []
     for role, shapes in groupby(rose.shapes, key=lambda shape: shape["role"]):
         paint = "".join(f' {name}="{escape(value)}"' for name, value in PAINT[role].items())
-        parts.append(f'<g class="{escape(role)}"{paint}>{"".join(map(element, shapes))}</g>')
-    return "".join([*parts, "</svg>"])
+        groups.append(f'<g class="{escape(role)}"{paint}>{"".join(map(element, shapes))}</g>')
+    return f"{head}{''.join(groups)}</svg>"
 
 
 def element(shape: Shape) -> str:

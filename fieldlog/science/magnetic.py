@@ -96,7 +96,7 @@ def rounded(declination_deg: float) -> float:
 
 @cache
 def _model(file: str) -> Callable[..., Any]:
-    from pygeomag import GeoMag  # type: ignore[import-untyped]
+    from pygeomag import GeoMag
 
     calculate: Callable[..., Any] = GeoMag(coefficients_file=file).calculate
     return calculate

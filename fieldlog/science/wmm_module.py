@@ -36,7 +36,7 @@ def main(argv: list[str]) -> int:
     if path.exists() and path.read_text(encoding="utf-8") == text:
         return 0
     if "--check" in argv:
-        print(f"{path.name}: stale. Run python -m fieldlog.science.wmm_module")
+        sys.stderr.write(f"{path.name}: stale. Run python -m fieldlog.science.wmm_module\n")
         return 1
     path.write_text(text, encoding="utf-8", newline="\n")
     return 0

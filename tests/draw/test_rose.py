@@ -10,10 +10,10 @@ from typing import Any
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
-from mirror import assert_same, javascript, vectors
 
 from fieldlog.draw.rose import Rose, RoseError, petal_counts, rose
 from fieldlog.science.summary import summarise
+from tests.mirror import assert_same, javascript, vectors
 
 CASES = vectors("rose")
 NOTHING = {

@@ -14,10 +14,10 @@ from typing import Any
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
-from mirror import assert_same, javascript
 
 from fieldlog.errors import Refusal
 from fieldlog.science import geodesy, nearby
+from tests.mirror import assert_same, javascript
 
 CASES = {
     case["id"]: case

@@ -12,12 +12,12 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from mirror import javascript
 from pygeomag import GeoMag
 
 from fieldlog.errors import Refusal
 from fieldlog.science import wmm_module
 from fieldlog.science.magnetic import MODELS, declination
+from tests.mirror import javascript
 
 CASES = {
     case["id"]: case

@@ -8,12 +8,12 @@ from dataclasses import asdict
 from typing import Any
 
 import pytest
-from mirror import assert_same, javascript, vectors
 
 from fieldlog.sheet.check import questions
 from fieldlog.sheet.crowd import strays
 from fieldlog.sheet.question import Thresholds
 from fieldlog.sheet.times import read_time
+from tests.mirror import assert_same, javascript, vectors
 
 CASES = vectors("check")
 

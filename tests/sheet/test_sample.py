@@ -6,9 +6,9 @@ from dataclasses import asdict
 from typing import Any
 
 import pytest
-from mirror import assert_same, javascript, vectors
 
 from fieldlog.sheet.sample import samples
+from tests.mirror import assert_same, javascript, vectors
 
 CASES = vectors("sample")
 
