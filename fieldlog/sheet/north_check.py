@@ -46,7 +46,7 @@ def north_questions(rows: Iterable[Row], *, thresholds: Thresholds, time_zone: s
         if magnetic and true:
             fewer = true if len(true) <= len(magnetic) else magnetic
             yield _about(fewer, "mixed_north", (
-                f"{name} is marked magnetic {len(magnetic)} times and true {len(true)} times on {day}; the declination "
+                f"{name} is marked magnetic {_times(len(magnetic))} and true {_times(len(true))} on {day}; the declination "
                 f"is {_signed(declination)} deg. Which is right?"))
             continue
         marked_magnetic = bool(magnetic)
@@ -107,6 +107,10 @@ def _declination(rows: list[Row]) -> float | None:
 
 def _instrument(row: Row) -> str:
     return str(row.get("instrument") or device(row))
+
+
+def _times(n: int) -> str:
+    return "once" if n == 1 else f"{n} times"
 
 
 def _signed(angle_deg: float) -> str:

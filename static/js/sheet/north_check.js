@@ -47,7 +47,7 @@ function ofOneDay(members, read, day, thresholds) {
   if (magnetic.length && truly.length) {
     const fewer = truly.length <= magnetic.length ? truly : magnetic;
     return [about(fewer, 'mixed_north',
-      `${name} is marked magnetic ${magnetic.length} times and true ${truly.length} times on ${day}; the declination `
+      `${name} is marked magnetic ${times(magnetic.length)} and true ${times(truly.length)} on ${day}; the declination `
       + `is ${signed(declination)} deg. Which is right?`)];
   }
   const found = offset(members, read, thresholds);
@@ -124,6 +124,11 @@ function about(rows, code, sentence) {
 /** @param {Row} row */
 function instrument(row) {
   return String(row.instrument || device(row));
+}
+
+/** @param {number} n */
+function times(n) {
+  return n === 1 ? 'once' : `${n} times`;
 }
 
 /** @param {number} angleDeg */
