@@ -103,7 +103,7 @@ def way_in(token: str) -> Any:
 def look() -> Any:
     """What a joining code opens, so that the phone can ask who it belongs to."""
     asked = _loaded(LookSchema())
-    found = service.look_at_code(db.session, asked["code"], secret=current_app.secret_key)
+    found = service.look_at_code(db.session, asked["code"], secret=str(current_app.secret_key))
     crew = [{"record": record, "name": name} for record, name in found.crew]
     return jsonify(LookAnswerSchema().dump({"survey": {"id": found.survey, "name": found.name}, "crew": crew}))
 
@@ -115,7 +115,7 @@ def join() -> Any:
     asked = _loaded(JoinSchema())
     with write() as session:
         joined = service.join(
-            session, asked["code"], secret=current_app.secret_key, device=asked["device"], app=asked["app"],
+            session, asked["code"], secret=str(current_app.secret_key), device=asked["device"], app=asked["app"],
             member=asked["crew"], name=asked["name"],
         )
         me = identity(session)

@@ -9,27 +9,26 @@ from datetime import date, datetime
 from typing import Any
 from zoneinfo import ZoneInfo
 
-from sqlalchemy import RowMapping, select
+from sqlalchemy import select
 
 from fieldlog.errors import Refusal
 from fieldlog.ledger.entry import Entry
 from fieldlog.review.results import MEASURES, Measure, Result, more_needed, results
 from fieldlog.sheet.check import questions
 from fieldlog.sheet.question import Question
+from fieldlog.sheet.times import read_time
 from fieldlog.store.append import ForeignStoreError
 from fieldlog.store.db import AnySession
 from fieldlog.store.projection import numbered_entries_of
 from fieldlog.store.tables import LedgerEntry, TwoVersions, observations, photos
-from fieldlog.surveys.service import crew_names, site_row, sites_of, survey_row
-
-Row = Mapping[str, Any]
+from fieldlog.surveys.service import Row, crew_names, site_row, sites_of, survey_row
 
 
 @dataclass(frozen=True)
 class SiteLine:
     """One site on the day sheet: what the chosen readings say, and what everything so far says."""
 
-    site: RowMapping
+    site: Row
     chosen: dict[str, Result | None]
     so_far: dict[str, Result | None]
     readings_chosen: int
@@ -55,7 +54,7 @@ class SiteLine:
 class DaySheet:
     """The day sheet of a survey."""
 
-    survey: RowMapping
+    survey: Row
     day: date | None
     member: str
     days: list[date]
@@ -68,14 +67,14 @@ class DaySheet:
 class SiteSheet:
     """All about one site."""
 
-    survey: RowMapping
-    site: RowMapping
+    survey: Row
+    site: Row
     crew: dict[str, str]
-    rows: Sequence[RowMapping]
+    rows: Sequence[Row]
     results: dict[str, list[Result]]
     questions: dict[str, list[Question]]
     two_versions: dict[str, list[str]]
-    photos: dict[str, list[RowMapping]]
+    photos: dict[str, list[Row]]
     measures: tuple[Measure, ...] = MEASURES
 
 
@@ -103,11 +102,10 @@ def day_sheet(session: AnySession, survey: str, *, day: str = "", member: str = 
     """
     head = survey_row(session, survey)
     zone = head["time_zone"]
-    rows = session.execute(select(observations).where(observations.c.survey == survey)
-                           .order_by(observations.c.observed_at, observations.c.record)).mappings().all()
+    rows = _observations(session, survey)
     days = sorted({day_of(row["observed_at"], zone) for row in rows}, reverse=True)
     chosen_day = _chosen_day(day, days)
-    by_site: dict[str, list[RowMapping]] = defaultdict(list)
+    by_site: dict[str, list[Row]] = defaultdict(list)
     for row in rows:
         by_site[row["site"]].append(row)
     all_sites = sites_of(session, survey)
@@ -135,6 +133,16 @@ def day_sheet(session: AnySession, survey: str, *, day: str = "", member: str = 
         ))
     lines.sort(key=_worst_first)
     return DaySheet(head, chosen_day, member, days, crew_names(session, survey), lines)
+
+
+def _observations(session: AnySession, survey: str, *more: Any) -> list[Row]:
+    """Observations in the order in which they were made."""
+    found = session.execute(
+        select(observations)
+        .where(observations.c.survey == survey, *more)
+        .order_by(observations.c.observed_at, observations.c.record)
+    )
+    return [dict(row) for row in found.mappings()]
 
 
 def _chosen_day(text: str, days: list[date]) -> date | None:
@@ -180,11 +188,7 @@ def site_sheet(session: AnySession, survey: str, record: str) -> SiteSheet:
     """All of one site."""
     head = survey_row(session, survey)
     site = site_row(session, survey, record)
-    rows = session.execute(
-        select(observations)
-        .where(observations.c.survey == survey, observations.c.site == record)
-        .order_by(observations.c.observed_at, observations.c.record)
-    ).mappings().all()
+    rows = _observations(session, survey, observations.c.site == record)
     asked: dict[str, list[Question]] = defaultdict(list)
     for question in questions(rows, sites=[site], time_zone=head["time_zone"]):
         asked[question.record].append(question)
@@ -202,14 +206,14 @@ def site_sheet(session: AnySession, survey: str, record: str) -> SiteSheet:
     )
 
 
-def photos_of(session: AnySession, survey: str, records: set[str]) -> dict[str, list[RowMapping]]:
-    found: dict[str, list[RowMapping]] = defaultdict(list)
+def photos_of(session: AnySession, survey: str, records: set[str]) -> dict[str, list[Row]]:
+    found: dict[str, list[Row]] = defaultdict(list)
     rows = session.execute(
         select(photos).where(photos.c.survey == survey, photos.c.crossed_out.is_(None)).order_by(photos.c.made_at)
     ).mappings()
     for row in rows:
         if row["observation"] in records:
-            found[row["observation"]].append(row)
+            found[row["observation"]].append(dict(row))
     return found
 
 
@@ -219,7 +223,7 @@ def history(session: AnySession, survey: str, record: str) -> list[Change]:
     if not numbered:
         raise ForeignStoreError("there is no such record in this survey")
     names = crew_names(session, survey)
-    received = dict(
+    received: dict[int, datetime] = dict(
         session.execute(
             select(LedgerEntry.seq, LedgerEntry.received_at).where(
                 LedgerEntry.survey == survey, LedgerEntry.record == record
@@ -231,12 +235,8 @@ def history(session: AnySession, survey: str, record: str) -> list[Change]:
     for seq, entry in numbered:
         fields = [(name, _before(entry, name, by_name), value) for name, value in entry.values.items()]
         by = entry.body["by"]
-        changes.append(Change(seq, names.get(by, by), entry.device, _made_at(entry), received[seq], fields))
+        changes.append(Change(seq, names.get(by, by), entry.device, read_time(entry.body["made_at"]), received[seq], fields))
     return changes
-
-
-def _made_at(entry: Entry) -> datetime:
-    return datetime.fromisoformat(entry.body["made_at"].replace("Z", "+00:00"))
 
 
 def _before(entry: Entry, name: str, by_name: Mapping[str, Entry]) -> Any:
@@ -245,14 +245,12 @@ def _before(entry: Entry, name: str, by_name: Mapping[str, Entry]) -> Any:
     return max(replaced, key=lambda other: other.order).values.get(name) if replaced else None
 
 
-def observation_row(session: AnySession, survey: str, record: str) -> RowMapping:
+def observation_row(session: AnySession, survey: str, record: str) -> Row:
     """One observation."""
-    found = session.execute(
-        select(observations).where(observations.c.survey == survey, observations.c.record == record)
-    ).mappings().first()
-    if found is None:
+    found = _observations(session, survey, observations.c.record == record)
+    if not found:
         raise ForeignStoreError("there is no such observation in this survey")
-    return found
+    return found[0]
 
 
 def versions_of_record(session: AnySession, survey: str, record: str) -> dict[str, list[Any]]:

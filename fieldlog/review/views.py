@@ -15,6 +15,7 @@ from fieldlog.review import service
 from fieldlog.review.results import Result
 from fieldlog.sheet.observation import OBSERVATION
 from fieldlog.store.db import db
+from fieldlog.surveys.service import crew_names, site_row, survey_row
 
 blueprint = Blueprint("review", __name__, url_prefix="/surveys/<survey>")
 
@@ -54,11 +55,11 @@ def observation(survey: str, record: str) -> str:
     row = service.observation_row(db.session, survey, record)
     return render_template(
         "desk/observation.html",
-        survey=service.survey_row(db.session, survey),
-        site=service.site_row(db.session, survey, row["site"]),
+        survey=survey_row(db.session, survey),
+        site=site_row(db.session, survey, row["site"]),
         row=row,
         fields=[field for field in OBSERVATION.fields if field.name != "site"],
-        crew=service.crew_names(db.session, survey),
+        crew=crew_names(db.session, survey),
         changes=service.history(db.session, survey, record),
         versions=service.versions_of_record(db.session, survey, record),
         photos=service.photos_of(db.session, survey, {record}).get(record, []),

@@ -229,7 +229,7 @@ def _kinds_of_named_records(
                 LedgerEntry.survey == survey, LedgerEntry.record.in_(named[start : start + CHUNK])
             )
         )
-        kinds.update({record: kind for record, kind in found})
+        kinds.update(found.tuples().all())
     return kinds
 
 

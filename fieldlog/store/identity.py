@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+from sqlalchemy import select
+
 from fieldlog.ledger.names import new_device
 from fieldlog.store.db import AnySession
-from fieldlog.store.tables import StoreIdentity
+from fieldlog.store.tables import StoreIdentity, SurveyCounter
 
 
 def identity(session: AnySession) -> StoreIdentity:
@@ -26,8 +28,14 @@ def ensure_identity(session: AnySession) -> StoreIdentity:
 
 
 def begin_epoch(session: AnySession) -> str:
-    """A new epoch: this store has gone back in time, phones must compare anew. Inside `write()`."""
+    """A new epoch: this store has gone back in time, phones must compare anew. Inside `write()`.
+
+    As a device of every survey the store has gone back too: phones may hold what it said under
+    numbers that it would now give a second time. So it goes on under new device ids.
+    """
     found = ensure_identity(session)
     found.epoch = new_device()
+    for counter in session.scalars(select(SurveyCounter)):
+        counter.store_device = new_device()
     session.flush()
     return found.epoch

@@ -64,7 +64,7 @@ class PhotoFolder:
                 out.write(data)
                 out.flush()
                 os.fsync(out.fileno())
-            os.replace(beside, path)
+            Path(beside).replace(path)
         except BaseException:
             Path(beside).unlink(missing_ok=True)
             raise

@@ -94,12 +94,11 @@ def _check_numbering(session: AnySession, survey: str) -> Iterator[Fault]:
         ):
             counts[device] = counts.get(device, 0) + count
             highest[device] = max(highest.get(device, 0), high)
-    through = {
-        device: n
-        for device, n in session.execute(
+    through: dict[str, int] = dict(
+        session.execute(
             select(DeviceCounter.device, DeviceCounter.received_through).where(DeviceCounter.survey == survey)
-        )
-    }
+        ).tuples().all()
+    )
     for device in sorted(counts.keys() | through.keys()):
         if not counts.get(device, 0) == highest.get(device, 0) == through.get(device, 0):
             yield Fault(

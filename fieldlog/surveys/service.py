@@ -2,18 +2,21 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any
 from zoneinfo import ZoneInfo, available_timezones
 
-from sqlalchemy import RowMapping, func, select
+from sqlalchemy import func, select
 
 from fieldlog.errors import Refusal
 from fieldlog.sheet.observation import OBSERVATION
 from fieldlog.store.append import ForeignStoreError, open_survey, say
 from fieldlog.store.db import AnySession
 from fieldlog.store.tables import crew, observations, sites, surveys
+
+Row = dict[str, Any]
+"""A row of a projected table, column -> value."""
 
 DEFAULTS: dict[str, Any] = {"fewest_dunes": 5, "reading_step_deg": 1}
 
@@ -30,7 +33,7 @@ class SurveyLine:
 
 def list_surveys(session: AnySession) -> list[SurveyLine]:
     """All surveys of the store by name."""
-    counts = {
+    counts: dict[str, dict[str, int]] = {
         table.name: dict(
             session.execute(select(table.c.survey, func.count()).group_by(table.c.survey)).tuples().all()
         )
@@ -43,7 +46,7 @@ def list_surveys(session: AnySession) -> list[SurveyLine]:
     ]
 
 
-def find_survey(session: AnySession, name_or_id: str) -> RowMapping:
+def find_survey(session: AnySession, name_or_id: str) -> Row:
     """A survey's row by its id or its unique name; Refusal where there is none or more than one."""
     found = session.execute(
         select(surveys).where((surveys.c.survey == name_or_id) | (surveys.c.name == name_or_id))
@@ -54,15 +57,15 @@ def find_survey(session: AnySession, name_or_id: str) -> RowMapping:
         )
     if len(found) > 1:
         raise Refusal(f"{len(found)} surveys are called {name_or_id!r}", mend="Name it by its id")
-    return found[0]
+    return dict(found[0])
 
 
-def survey_row(session: AnySession, survey: str) -> RowMapping:
+def survey_row(session: AnySession, survey: str) -> Row:
     """A survey's row by its id."""
     found = session.execute(select(surveys).where(surveys.c.survey == survey)).mappings().first()
     if found is None:
         raise ForeignStoreError("there is no such survey here", mend="Begin at the list of surveys")
-    return found
+    return dict(found)
 
 
 def check_time_zone(name: str | None) -> None:
@@ -108,21 +111,22 @@ def crew_of_lead(session: AnySession, survey: str, lead_name: str) -> str:
     return found or say(session, survey, by=None, kind="crew", values={"name": lead_name, "lead": True})
 
 
-def sites_of(session: AnySession, survey: str) -> Sequence[RowMapping]:
+def sites_of(session: AnySession, survey: str) -> list[Row]:
     """The survey's sites by name, the crossed-out ones last."""
-    return session.execute(
+    found = session.execute(
         select(sites).where(sites.c.survey == survey).order_by(sites.c.crossed_out.is_not(None), sites.c.name)
-    ).mappings().all()
+    )
+    return [dict(row) for row in found.mappings()]
 
 
-def site_row(session: AnySession, survey: str, record: str) -> RowMapping:
+def site_row(session: AnySession, survey: str, record: str) -> Row:
     """One site."""
     found = session.execute(
         select(sites).where(sites.c.survey == survey, sites.c.record == record)
     ).mappings().first()
     if found is None:
         raise ForeignStoreError("there is no such site in this survey", mend="Begin at the survey's page")
-    return found
+    return dict(found)
 
 
 def crew_names(session: AnySession, survey: str) -> dict[str, str]:

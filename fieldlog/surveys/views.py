@@ -12,6 +12,7 @@ from fieldlog.errors import Refusal
 from fieldlog.people import service as people
 from fieldlog.people.access import callers
 from fieldlog.sheet.subjects import SITE, SURVEY
+from fieldlog.store.append import ForeignStoreError
 from fieldlog.store.db import db
 from fieldlog.store.transaction import write
 from fieldlog.surveys import service
@@ -88,7 +89,7 @@ def change(survey: str) -> Any:
         with write() as session:
             by = service.crew_of_lead(session, survey, g.lead.name)
             service.change_survey(session, survey, by, values)
-    except service.ForeignStoreError:
+    except ForeignStoreError:
         raise
     except Refusal as problem:
         return _set_up_page(survey, problem=problem, values=request.form), 422
@@ -121,7 +122,7 @@ def put_site(survey: str, record: str | None = None) -> Any:
         with write() as session:
             by = service.crew_of_lead(session, survey, g.lead.name)
             service.put_site(session, survey, by, values, record)
-    except service.ForeignStoreError:
+    except ForeignStoreError:
         raise
     except Refusal as problem:
         return _site_page(survey, record, request.form, problem), 422
@@ -149,7 +150,7 @@ def make_code(survey: str) -> Any:
         raise Refusal(f"{typed!r} is not a number of hours", "hours")
     with write() as session:
         code = people.make_joining_code(
-            session, survey, secret=current_app.secret_key, who=g.lead.name, hours=int(typed)
+            session, survey, secret=str(current_app.secret_key), who=g.lead.name, hours=int(typed)
         )
     link = f"{current_app.config['ERGBOOK'].address}/phone/#join={code}"
     return render_template(

@@ -92,11 +92,12 @@ def _register(app: Flask) -> None:
     callers("anyone")(app.view_functions["static"])
     for place in BLUEPRINTS:
         module, name = place.split(":")
-        if find_spec(module.rpartition('.')[0]) is None or find_spec(module) is None or (module.endswith('shell') and not (static_folder() / 'css/phone.css').exists()): continue
+        if find_spec(module.rpartition(".")[0]) is None or find_spec(module) is None or (module.endswith("shell") and not (static_folder() / "css/phone.css").exists()): continue
         blueprint: Any = getattr(import_module(module), name)
         app.register_blueprint(blueprint)
         if blueprint.name in WITHOUT_FORMS:
             csrf.exempt(blueprint)
     limiter = Limiter(get_remote_address, app=app)
     for endpoint, limit in TRIES.items():
-        app.view_functions[endpoint] = limiter.limit(limit)(app.view_functions[endpoint])
+        limited: Any = limiter.limit(limit)(app.view_functions[endpoint])
+        app.view_functions[endpoint] = limited

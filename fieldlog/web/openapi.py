@@ -72,8 +72,8 @@ def description() -> dict[str, Any]:
         spec.components.schema(f"{kind.capitalize()}Values", schema=schema_for(kind))
     survey = [_parameter("survey")]
     photo = [*survey, _parameter("sha256")]
-    phone = [{"phone": []}]
-    either = [{"phone": []}, {"lead": []}]
+    phone: list[dict[str, list[str]]] = [{"phone": []}]
+    either: list[dict[str, list[str]]] = [{"phone": []}, {"lead": []}]
     spec.path("/api/v1/health", operations={"get": {"responses": _answers({200: "Health"})}})
     spec.path("/api/v1/openapi.json", operations={"get": {"responses": _answers({200: None})}})
     spec.path(
