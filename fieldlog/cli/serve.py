@@ -10,7 +10,7 @@ from typing import Any
 import click
 
 
-class _Stop(Exception):
+class _Stop(KeyboardInterrupt):
     """Somebody asked the server to stop."""
 
 

@@ -125,7 +125,7 @@ def wire_field(field: Field) -> fields.Field[Any]:
     inner: fields.Field[Any]
     if field.type in ("number", "integer", "direction", "orientation"):
         bounds = _range(field)
-        inner = _Number(whole=field.type == "integer", validate=bounds and [bounds] or [], **common)
+        inner = _Number(whole=field.type == "integer", validate=(bounds and [bounds]) or [], **common)
     elif field.type == "choice":
         words = [word.value for word in VOCABULARIES[field.vocabulary or ""]]
         inner = _Text(validate=validate.OneOf(words, error="{input} is none of {choices}"), **common)

@@ -105,5 +105,6 @@ def _answer(path: str, content: bytes, *, cache: str) -> Response:
     if suffix in TYPES and request.accept_encodings["gzip"] > 0:
         response.set_data(gzip.compress(content, 6, mtime=0))
         response.headers["Content-Encoding"] = "gzip"
-    response.add_etags()
-    return response.make_conditional(request)
+    response.add_etag()
+    response.make_conditional(request)
+    return response

@@ -19,6 +19,7 @@ from fieldlog.store.tables import LedgerEntry, SetAside, TwoVersions, observatio
 from fieldlog.store.transaction import write
 from tests.factories import WHEN, Survey, send
 
+
 @pytest.fixture
 def survey(app: Flask) -> Any:
     with app.app_context():
