@@ -18,7 +18,7 @@ from fieldlog.cli.columns import TableError, column_index, labels, numbers, read
 @click.option("--against", type=float, metavar="DEG", help="Test against this direction (V test).")
 @click.option("--target", type=click.FloatRange(0, 90, min_open=True), metavar="DEG", help="The half-width wanted.")
 @click.option("--bedform", metavar="COLUMN", help="The column that names the dune of each reading.")
-@click.option("--fewest", type=click.IntRange(2), default=5, show_default=True, help="Dunes below which nothing is said.")
+@click.option("--fewest", type=click.IntRange(2), default=5, show_default=True, help="Fewest dunes for a finding.")
 @click.option("--subject", default="readings", show_default=True, help="The words that begin the finding.")
 @click.option("--json", "as_json", is_flag=True, help="Print JSON.")
 def stats(

@@ -15,6 +15,11 @@ from fieldlog.science.angles import apart, reduced_one
 from fieldlog.science.modes import Mode
 
 OUTCOMES: Final = ("one", "two_opposed", "two", "three_or_more", "spread", "too_few")
+NAMED: Final = {
+    "two_opposed": "two opposed directions",
+    "two": "two directions",
+    "three_or_more": "three or more directions",
+}
 LEVEL: Final = 0.05
 LEVEL_MULTIPLIED: Final = 0.025
 """For doubled and trebled angles, which are looked at as well as the plain ones."""
@@ -93,10 +98,9 @@ def finding(facts: Facts) -> str:
         return _too_few(facts, counts)
     if facts.outcome == "spread":
         return f"{counts} {'is' if facts.readings == 1 else 'are'} spread all round: no direction shows."
-    named = {"two_opposed": "two opposed directions", "two": "two directions", "three_or_more": "three or more directions"}
     ways = join([str(whole(d, facts.axial)) for d in sorted(facts.directions_deg)])
     where = f" {ways} deg" if ways else " more than one way"
-    return f"{_lead(facts)}{where}: {counts}, {named[facts.outcome]}; no single mean."
+    return f"{_lead(facts)}{where}: {counts}, {NAMED[facts.outcome]}; no single mean."
 
 
 def whole(angle_deg: float, axial: bool) -> int:
@@ -117,7 +121,8 @@ def counted(n: int, singular: str) -> str:
 
 def degrees(value: float) -> str:
     """A target as the lead wrote it: 10, 7.5."""
-    return str(int(value)) if value == int(value) else f"{value:.1f}"
+    tenths = math.floor(value * 10 + 0.5) / 10
+    return str(int(tenths)) if tenths == int(tenths) else f"{tenths:.1f}"
 
 
 def _counts(facts: Facts) -> str:

@@ -33,9 +33,9 @@ def median_direction(angles_deg: Angles, mean_deg: float | None) -> float | None
     sums = _distances(places, x)
     least = float(sums.min()) + SAME_DEG * len(x)
     chosen = sums <= least
-    found = _centres(places[chosen], counts[chosen], x, least)
+    found = _centres(places[chosen], counts[chosen].tolist(), x, least)
     nearest = sorted((apart(centre, mean_deg), centre) for centre in found)
-    if not nearest or len(nearest) > 1 and nearest[1][0] - nearest[0][0] < SAME_DEG:
+    if not nearest or (len(nearest) > 1 and nearest[1][0] - nearest[0][0] < SAME_DEG):
         return None
     return nearest[0][1]
 
@@ -53,7 +53,7 @@ def _distances(points: Angles, x: Angles) -> Angles:
     return np.asarray(clockwise + anticlockwise)
 
 
-def _centres(best: Angles, counts: Angles, x: Angles, least: float) -> list[float]:
+def _centres(best: Angles, counts: list[int], x: Angles, least: float) -> list[float]:
     """Mean of each arc of best readings: neighbours are one arc where the way between is as good."""
     m = len(best)
     if m == 1:
@@ -64,10 +64,10 @@ def _centres(best: Angles, counts: Angles, x: Angles, least: float) -> list[floa
     for i in range(m):
         if joined[i - 1]:
             continue
-        total, weight, k = 0.0, float(counts[i]), i
+        total, weight, k = 0.0, counts[i], i
         while joined[k % m]:
             k += 1
-            share = float(counts[k % m])
+            share = counts[k % m]
             total += share * (float(best[k % m]) + 360.0 * (k // m) - float(best[i]))
             weight += share
         centres.append(reduced_one(float(best[i]) + total / weight))

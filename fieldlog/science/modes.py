@@ -109,9 +109,9 @@ def _places(angles_deg: Angles) -> tuple[Array, Array]:
     x, counts = np.unique(reduced(angles_deg), return_counts=True)
     if len(x) > MOST_PLACES:
         classes = np.floor(x * (MOST_PLACES / 360.0)).astype(int)
-        held = np.bincount(classes, weights=counts, minlength=MOST_PLACES)
+        held = np.bincount(classes, weights=counts, minlength=MOST_PLACES).astype(np.float64)
         filled = np.flatnonzero(held)
-        return (filled + 0.5) * (360.0 / MOST_PLACES), held[filled]
+        return np.asarray((filled + 0.5) * (360.0 / MOST_PLACES), dtype=np.float64), np.asarray(held[filled])
     return x, counts.astype(np.float64)
 
 

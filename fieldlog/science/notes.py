@@ -3,8 +3,14 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Final
 
 from fieldlog.science.finding import counted, degrees
+
+OF_AXES: Final = (
+    "Axes: mean, median, SD, deviation and interval are halved back to axes; "
+    "resultant length, variance, kappa and tests are on the doubled angles."
+)
 
 
 @dataclass(frozen=True)
@@ -25,7 +31,6 @@ class Circumstances:
     outcome: str
     units: int
     fewest_for_modes: int
-    target_deg: float | None
     needed: int | None
     classes: bool
     classes_refused: str
@@ -66,8 +71,9 @@ def _independence(facts: Circumstances) -> list[str]:
 
 
 def _interval(facts: Circumstances) -> list[str]:
-    if facts.identical and facts.units > 1:
-        return ["All directions are the same: kappa has no bound. Check the instrument, or give the reading step."]
+    if facts.identical:
+        mend = "" if facts.has_interval else " Check the instrument, or give the reading step."
+        return [f"All directions are the same: kappa has no bound.{mend}"]
     if not facts.mean_exists:
         return ["The directions cancel out: there is no mean direction."]
     unit = "readings" if facts.bedforms is None else "dunes"
@@ -85,10 +91,7 @@ def _interval(facts: Circumstances) -> list[str]:
 def _scale(facts: Circumstances) -> list[str]:
     if not facts.axial:
         return []
-    return [
-        "Axes: mean, median, SD, deviation and interval are halved back to axes; "
-        "resultant length, variance, kappa and tests are on the doubled angles."
-    ]
+    return [OF_AXES]
 
 
 def _classes(facts: Circumstances) -> list[str]:

@@ -20,7 +20,7 @@ def hotelling(means_deg: Angles, lengths: Angles) -> Test:
 
     >>> t = hotelling(np.array([10.0, 350, 30, 5]), np.array([0.9, 0.8, 0.95, 0.9]))
     >>> round(t.p, 4)
-    0.0048
+    0.0028
     """
     k = len(means_deg)
     if k < 3:
