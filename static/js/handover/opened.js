@@ -162,6 +162,7 @@ export class Notebook {
     this.ending.abort();
     await this.saving;
     this.channel?.close();
+    this.channel = null; // a hand-over that is just ending has nobody left to tell
     this.listeners.clear();
     await this.connection.close();
   }
@@ -186,6 +187,9 @@ export class Notebook {
   async #save(kind, set, {record, photos = [], draft}) {
     if (!CONSTANTS.phone_kinds.includes(kind)) {
       throw new Problem(`Not saved: a ${kind} is not said on a phone`, '', 'The lead changes it at base.');
+    }
+    if (record !== undefined && this.replica.merged(record)?.created?.body.kind !== kind) {
+      throw new Problem(`Not saved: there is no ${kind} ${record} on this phone`, '', 'Go back and choose it again.');
     }
     const shelved = [];
     for (const photo of photos) {

@@ -29,8 +29,9 @@ export async function pull(desk, onProgress = () => {}) {
     )));
     if (changes.length) {
       const storeTimeMs = Date.parse(answer.body.time);
-      const {entries, cursor, counter, foreign} = await keepChanges(desk.connection, desk.kept, {after, storeTimeMs, changes: hashed});
+      const {entries, cursor, counter, foreign, changed} = await keepChanges(desk.connection, desk.kept, {after, storeTimeMs, changes: hashed});
       if (foreign) await stopForked(desk);
+      if (changed) throw new Stopped(changedProblem(changed));
       Object.assign(desk.kept, {cursor, counter});
       desk.take(entries);
     }
@@ -70,6 +71,15 @@ async function page(api, after, epoch) {
   if (answer.status >= 400) throw new Stopped(problemIn(answer));
   if (answer.body.epoch !== epoch) throw new NewEpoch(String(answer.body.epoch));
   return {answer, changes: consecutive(answer.body, after)};
+}
+
+/** @param {string} name of an entry */
+function changedProblem(name) {
+  return new Problem(
+    'Base has changed an entry that this phone holds',
+    `entry ${name} reads otherwise there; entries never change`,
+    'What is on this phone stays as it is. Tell whoever runs the store to run: ergbook check',
+  );
 }
 
 /**

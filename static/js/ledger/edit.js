@@ -98,7 +98,7 @@ function withOlder(replica, names, listed) {
   const all = new Set(names);
   for (const name of all) {
     if (replica.isAtBase(name)) continue;
-    const entry = replica.entry(name);
+    const entry = replica.entries.get(name);
     if (entry) listed(entry.body).forEach((older) => all.add(older));
   }
   return [...all];

@@ -5,6 +5,7 @@
 
 import {readEntry} from './entry.js';
 import {merge} from './merge.js';
+import {splitName} from './names.js';
 import {project} from './project.js';
 
 /** @typedef {import('./entry.js').Entry} Entry */
@@ -35,7 +36,9 @@ import {project} from './project.js';
 
 export class Replica {
   constructor() {
-    /** @type {Map<string, Map<string, Entry>>} record -> entry name -> entry */
+    /** @type {Map<string, Entry>} by name */
+    this.entries = new Map();
+    /** @type {Map<string, Set<string>>} record -> names of its entries */
     this.records = new Map();
     /** @type {Map<string, {seq: number | null, problem: string | null}>} entry name -> what base said */
     this.said = new Map();
@@ -45,8 +48,10 @@ export class Replica {
     this.newer = new Set();
     /** @type {Map<string, Merged>} */
     this.mergedRecords = new Map();
-    /** @type {Map<string, Map<string, Row>> | null} kind -> record -> row */
-    this.rowsByKind = null;
+    /** @type {Map<string, Map<string, Row>>} kind -> record -> row */
+    this.rowsByKind = new Map();
+    /** @type {Map<string, Row[]>} kind -> rows in order */
+    this.sortedRows = new Map();
     /** @type {Set<string>} records whose rows are out of date */
     this.stale = new Set();
   }
@@ -64,18 +69,12 @@ export class Replica {
       }
       this.said.set(entry.name, {seq: kept.seq, problem: kept.problem});
       if (entry.body.mends) this.mended.set(entry.body.mends, entry.name);
-      const entries = this.records.get(entry.record) ?? new Map();
-      this.records.set(entry.record, entries.set(entry.name, entry));
+      this.entries.set(entry.name, entry);
+      this.records.set(entry.record, (this.records.get(entry.record) ?? new Set()).add(entry.name));
       this.mergedRecords.delete(entry.record);
       this.stale.add(entry.record);
       if (entry.body.mends) this.stale.add(entry.body.mends);
     }
-  }
-
-  /** Forget that base holds anything: it has gone back in time. */
-  forgetBase() {
-    for (const answer of this.said.values()) Object.assign(answer, {seq: null, problem: null});
-    this.rowsByKind = null;
   }
 
   /**
@@ -83,23 +82,11 @@ export class Replica {
    * @returns {Merged | null} null where nothing is known of the record
    */
   merged(record) {
-    const entries = this.records.get(record);
-    if (!entries) return null;
-    const known = this.mergedRecords.get(record) ?? merge(entries.values());
+    const names = this.records.get(record);
+    if (!names) return null;
+    const known = this.mergedRecords.get(record) ?? merge([...names].flatMap((name) => this.entries.get(name) ?? []));
     this.mergedRecords.set(record, known);
     return known;
-  }
-
-  /**
-   * @param {string} name of an entry
-   * @returns {Entry | null}
-   */
-  entry(name) {
-    for (const record of [name, ...this.records.keys()]) {
-      const found = this.records.get(record)?.get(name);
-      if (found) return found;
-    }
-    return null;
   }
 
   /**
@@ -117,7 +104,9 @@ export class Replica {
    */
   rows(kind) {
     const current = this.#currentRows();
-    return [...(current.get(kind)?.values() ?? [])].sort((a, b) => (a.madeAt < b.madeAt ? -1 : a.madeAt > b.madeAt ? 1 : 0));
+    const sorted = this.sortedRows.get(kind) ?? [...(current.get(kind)?.values() ?? [])].sort(inOrder);
+    this.sortedRows.set(kind, sorted);
+    return [...sorted];
   }
 
   /**
@@ -130,20 +119,18 @@ export class Replica {
   }
 
   #currentRows() {
-    const rowsByKind = this.rowsByKind ?? new Map();
-    const stale = this.rowsByKind ? this.stale : this.records.keys();
-    for (const record of stale) {
+    if (this.stale.size) this.sortedRows.clear();
+    for (const record of this.stale) {
       const merged = this.merged(record);
       if (!merged?.created) continue;
       const {kind} = merged.created.body;
-      const rows = rowsByKind.get(kind) ?? new Map();
-      rowsByKind.set(kind, rows);
+      const rows = this.rowsByKind.get(kind) ?? new Map();
+      this.rowsByKind.set(kind, rows);
       if (this.mended.has(record) && this.said.get(record)?.problem) rows.delete(record);
       else rows.set(record, this.#row(record, merged));
     }
     this.stale.clear();
-    this.rowsByKind = rowsByKind;
-    return rowsByKind;
+    return this.rowsByKind;
   }
 
   /**
@@ -152,7 +139,7 @@ export class Replica {
    * @returns {Row}
    */
   #row(record, merged) {
-    const names = [...(this.records.get(record)?.keys() ?? [])];
+    const names = [...(this.records.get(record) ?? [])];
     const standing = new Set([record, ...Object.values(merged.heads).flat()]);
     const {made_by: madeBy, made_on: madeOn, made_at: madeAt, ...columns} = project(merged);
     const row = {
@@ -169,4 +156,14 @@ export class Replica {
     };
     return row;
   }
+}
+
+/**
+ * @param {Row} a
+ * @param {Row} b
+ */
+function inOrder(a, b) {
+  if (a.madeAt !== b.madeAt) return a.madeAt < b.madeAt ? -1 : 1;
+  if (a.madeOn !== b.madeOn) return a.madeOn < b.madeOn ? -1 : 1;
+  return splitName(a.record).n - splitName(b.record).n;
 }

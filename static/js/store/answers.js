@@ -44,8 +44,9 @@ export function keepAnswers(connection, device, results) {
  * @param {number} page.after the cursor that it was asked for with
  * @param {number} page.storeTimeMs
  * @param {(Change & {sha256: string})[]} page.changes
- * @returns {Promise<{entries: KeptEntry[], cursor: number, counter: import('./load.js').Counter, foreign: string}>} `foreign`:
- * an own entry that base holds and this phone never wrote; then nothing is kept
+ * @returns {Promise<{entries: KeptEntry[], cursor: number, counter: import('./load.js').Counter, foreign: string, changed: string}>}
+ * `foreign`: an own entry that base holds and this phone never wrote; `changed`: one of another device whose text is
+ * not the one kept here. With either, nothing of the page is kept
  */
 export function keepChanges(connection, kept, {after, storeTimeMs, changes}) {
   const {device} = kept.info;
@@ -55,10 +56,13 @@ export function keepChanges(connection, kept, {after, storeTimeMs, changes}) {
     const asked = [meta.get('cursor'), meta.get('counter'), ...changes.map((each) => ledger.get([each.device, each.n]))];
     whenAll(asked, ([cursor, counter, ...rows]) => {
       // Another page has been here meanwhile: its answer counts.
-      if ((cursor ?? 0) !== after) return done({entries: [], cursor, counter, foreign: ''});
+      if ((cursor ?? 0) !== after) return done({entries: [], cursor, counter, foreign: '', changed: ''});
       const unknown = changes.find((each, index) => !rows[index] && each.text === undefined);
-      if (unknown) {
-        return done({entries: [], cursor: after, counter, foreign: entryName(unknown.device, unknown.n)});
+      const other = changes.find((each, index) => rows[index] && each.text !== undefined && rows[index].sha256 !== each.sha256);
+      if (unknown || other) {
+        /** @param {Change | undefined} change */
+        const nameOf = (change) => (change ? entryName(change.device, change.n) : '');
+        return done({entries: [], cursor: after, counter, foreign: nameOf(unknown), changed: nameOf(other)});
       }
       const entries = changes.flatMap((each, index) => {
         const {device: of, n, seq, sha256} = each;
@@ -75,7 +79,7 @@ export function keepChanges(connection, kept, {after, storeTimeMs, changes}) {
       const through = after + changes.length;
       meta.put(through, 'cursor');
       meta.put({...counter, hlc}, 'counter');
-      done({entries, cursor: through, counter: {...counter, hlc}, foreign: ''});
+      done({entries, cursor: through, counter: {...counter, hlc}, foreign: '', changed: ''});
     });
   });
 }
