@@ -11,6 +11,7 @@ import math
 from typing import Final
 
 import numpy as np
+from scipy import special
 
 from fieldlog.science.angles import Angles, reduced
 from fieldlog.science.uniformity import kuiper_modified, kuiper_tail, watson_modified
@@ -83,3 +84,8 @@ def chi_square(counts: Angles) -> tuple[float, int]:
     """
     expected = float(counts.sum()) / len(counts)
     return round(float(((counts - expected) ** 2).sum()) / expected, 12), len(counts) - 1
+
+
+def chi_square_p(statistic: float, freedom: int) -> float:
+    """Upper tail of chi-square."""
+    return float(special.chdtrc(freedom, statistic))
