@@ -23,7 +23,7 @@ HASH_LENGTH: Final = 12
 
 _OTHER_FILES: Final = ("css/tokens.css", "css/rose.css", "css/phone.css", "manifest.webmanifest")
 _IMPORT: Final = re.compile(
-    r"""^\s*(?:(?:import|export)\s[^'";]*?\bfrom\s*|import\s*)['"](\.[^'"]+)['"]""", re.MULTILINE
+    r"""(?:^\s*(?:(?:import|export)\s[^'";]*?\bfrom\s*|import\s*)|new URL\()['"](\.[^'"]+\.js)['"]""", re.MULTILINE
 )
 
 RenderPage = Callable[[str, Sequence[str]], str]
@@ -53,7 +53,7 @@ def collect(static: Path, page_source: str, version: str, render: RenderPage) ->
 
 
 def module_paths(static: Path) -> list[str]:
-    """js/phone.js and all that it imports, each once, in the order in which they are met."""
+    """js/phone.js, all that it imports and the workers it starts, each once, in the order in which they are met."""
     found: list[str] = []
     waiting = [PurePosixPath(ENTRY)]
     while waiting:

@@ -1,6 +1,7 @@
 /** The phone: the only place where its parts are put together. */
 
 import {browserDeps, join, listNotebooks, lookCode, openNotebook} from './handover/notebook.js';
+import {summariseApart} from './science/summarise_apart.js';
 import {createPosition} from './sensors/position.js';
 import {el, fill} from './ui/element.js';
 import {mountFinding} from './ui/finding.js';
@@ -13,17 +14,21 @@ import {openQuestions} from './ui/questions_here.js';
 import {mountReading} from './ui/reading.js';
 import {openSheet} from './ui/sheet_in_hand.js';
 import {createShellUpdate} from './ui/shell_update.js';
+import {createSummaries} from './ui/summaries.js';
 import {openTheme} from './ui/theme.js';
 import {mountToday} from './ui/today.js';
+import {vouchForOwnScripts} from './ui/trusted.js';
 
 /** @typedef {import('./handover/notebook.js').OpenNotebook} OpenNotebook */
 
 const root = /** @type {HTMLElement} */ (document.getElementById('phone'));
 /** @type {{app: string, shell: string}} */
 const start = JSON.parse(document.getElementById('start')?.textContent ?? '{}');
+vouchForOwnScripts();
 const clock = () => Date.now();
 const deps = browserDeps({app: start.app, base: new URL('..', location.href).href.replace(/\/$/, '')});
 const shell = createShellUpdate({...start, workers: navigator.serviceWorker, reload: () => location.reload()});
+const summaries = createSummaries(summariseApart());
 const position = createPosition({geolocation: navigator.geolocation, clock, page: document});
 
 /** @param {OpenNotebook} notebook */
@@ -54,6 +59,7 @@ async function show(notebook) {
     position,
     hand,
     questions,
+    summaries,
     theme,
     shell,
     storage: navigator.storage,

@@ -62,6 +62,8 @@ function groupBlocks(sheet, group, fields) {
   for (const block of made) {
     const beside = block.companions.map((field) => field.name);
     block.plain = block.plain.filter((field) => !beside.includes(field.name));
+    const [only, ...others] = block.plain;
+    if (!block.measure && only && !others.length) block.label = only.label;
   }
   return made;
 }

@@ -13,11 +13,12 @@ const DELETE = '⌫';
  * @param {FieldDeclaration} field
  * @param {object} deps
  * @param {(value: unknown) => void} deps.change undefined: taken away
+ * @param {number} deps.decimals 0: no point on the pad
  * @param {() => void} deps.next go on to the next measure
  * @param {HTMLElement | null} deps.drawing stands beside the number
  * @returns {import('./choice.js').Widget}
  */
-export function numberPad(field, {change, next, drawing}) {
+export function numberPad(field, {change, decimals, next, drawing}) {
   let text = '';
   let fresh = true; // the next digit begins a new number
   const digits = field.type === 'direction' || field.type === 'orientation' ? 3 : 6;
@@ -62,7 +63,7 @@ export function numberPad(field, {change, next, drawing}) {
   }
 
   const keys = KEYS.map((key) => {
-    if (key === '.' && !field.decimals) return el('span');
+    if (key === '.' && !decimals) return el('span');
     return el('button', {type: 'button', class: 'key', onclick: () => press(key)}, key);
   });
   const erase = el('button', {type: 'button', class: 'key', 'aria-label': 'Delete digit', onclick: () => press(DELETE)}, DELETE);

@@ -32,6 +32,7 @@ export function mountObservation({main, dock, signal, detail}, parts) {
     sheet: OBSERVATION,
     answers,
     switchedOn: [...(notebook.survey()?.optional_fields ?? []), ...said(first)],
+    stepDeg: notebook.survey()?.reading_step_deg ?? null,
     referable: referable(notebook),
     scroller: main,
     signal,

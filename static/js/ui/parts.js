@@ -8,6 +8,7 @@
  * @property {import('../sensors/position.js').Position} position
  * @property {import('./sheet_in_hand.js').SheetInHand} hand
  * @property {import('./questions_here.js').Questions} questions
+ * @property {import('./summaries.js').Summaries} summaries
  * @property {import('./theme.js').Theme} theme
  * @property {import('./shell_update.js').ShellUpdate} shell
  * @property {StorageManager | undefined} storage

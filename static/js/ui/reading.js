@@ -28,6 +28,7 @@ export function mountReading({main, dock, signal}, parts) {
     sheet: OBSERVATION,
     answers,
     switchedOn: notebook.survey()?.optional_fields ?? [],
+    stepDeg: notebook.survey()?.reading_step_deg ?? null,
     referable: names,
     scroller: main,
     signal,
@@ -35,20 +36,19 @@ export function mountReading({main, dock, signal}, parts) {
   const strip = photoStrip({photos: hand.photos, change: hand.setPhotos, signal});
   const last = el('section', {class: 'last', 'aria-label': 'Last readings here'});
   const nextDune = el('button', {type: 'button', class: 'next_dune', onclick: hand.nextDune}, 'Next dune');
-  const bar = saveBar({save, undo: hand.undo, signal});
+  const bar = saveBar({save, undo: hand.undo, beside: nextDune, signal});
   /** What was answered last time decides which measure opens first. */
   let before = lastValues(parts);
 
-  fill(main, el('h1', {class: 'unseen'}, 'Reading'), nextDune, form.element, strip.element, last);
+  fill(main, el('h1', {class: 'unseen'}, 'Reading'), form.element, strip.element, last);
   fill(dock, bar.element);
-  form.open(form.firstAnswered(before), false);
+  form.open(form.firstAnswered(before), true);
 
   async function save() {
     const [problem] = hand.problems();
     if (problem) {
-      bar.calm();
       if (problem.field) form.refuse(problem.field, problem.text);
-      bar.tell(problem.text);
+      bar.refuse(problem.text);
       return null;
     }
     const saved = await hand.save();
@@ -70,7 +70,10 @@ export function mountReading({main, dock, signal}, parts) {
     bar.showFix(fixSentence(parts));
   }
 
-  hand.watch(() => strip.show(), signal);
+  hand.watch(() => {
+    strip.show();
+    bar.forgive();
+  }, signal);
   position.watch(() => bar.showFix(fixSentence(parts)), signal);
   const tick = setInterval(() => bar.showFix(fixSentence(parts)), TICK_MS);
   position.start();

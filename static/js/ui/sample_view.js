@@ -2,8 +2,7 @@
 
 import {rose} from '../draw/rose.js';
 import {svg} from '../draw/svg.js';
-import {summarise} from '../science/summary.js';
-import {el} from './element.js';
+import {el, fill} from './element.js';
 import {bearing, compassPoint, count} from './figures.js';
 import {sampleName} from './observation_line.js';
 
@@ -11,6 +10,7 @@ const SIZE = 320;
 const WIDEST_DEG = 60;
 
 /** @typedef {import('../sheet/sample.js').Sample} Sample */
+/** @typedef {import('../science/summary.js').Summary} Summary */
 
 /**
  * @param {Sample | null} sample
@@ -19,37 +19,44 @@ const WIDEST_DEG = 60;
  * @param {import('./parts.js').Parts} parts
  * @returns {HTMLElement}
  */
-export function sampleView(sample, measure, siteRecord, {notebook}) {
+export function sampleView(sample, measure, siteRecord, {notebook, summaries}) {
+  const element = el('section', {class: 'sample'});
+  if (!sample) {
+    fill(element, el('p', {class: 'empty'}, `No ${measure.label.toLowerCase()} read at this site yet.`));
+    return element;
+  }
   const survey = notebook.survey();
   const site = notebook.sites().find((row) => row.record === siteRecord);
-  const angles = sample?.angles ?? [];
   const expected = measure.axial ? null : site?.expected_facing_deg ?? null;
   const target = site?.target_half_width_deg ?? survey?.target_half_width_deg ?? null;
-  if (!sample) return el('section', {class: 'sample'}, el('p', {class: 'empty'}, `No ${measure.label.toLowerCase()} read at this site yet.`));
-  const summary = summarise(angles, {
-    bedforms: sample.bedforms.every((dune) => dune !== null) ? sample.bedforms : null,
+  const options = {
+    bedforms: sample.bedforms.some((dune) => dune !== null) ? sample.bedforms : null,
     axial: measure.axial,
     stepDeg: survey?.reading_step_deg ?? null,
     againstDeg: expected,
     targetDeg: target,
     fewestBedforms: survey?.fewest_dunes ?? 5,
     subject: measure.subject,
-  });
-  const drawing = rose(angles, /** @type {any} */ (summary), {axial: measure.axial, size: SIZE, expectedDeg: expected});
-  return el(
-    'section',
-    {class: 'sample'},
-    el('p', {class: 'sentence'}, summary.finding),
-    needed(summary, target),
-    /** @type {any} */ (svg(drawing, {identifier: 'finding-rose'})),
-    half(summary, target),
-    el('p', {class: 'help'}, `${sampleName(sample)}: ${count(angles.length, 'reading')}${summary.bedforms ? ` on ${count(summary.bedforms, 'dune')}` : ''}.`),
-    numbers(summary, measure, expected),
-    summary.notes.length > 0 && el('ul', {class: 'notes'}, summary.notes.map((/** @type {string} */ note) => el('li', {}, note))),
-  );
-}
+  };
+  summaries.of(sample.angles, options, draw, (error) => element.append(el('p', {class: 'problem', role: 'alert'}, error.message)));
+  return element;
 
-/** @typedef {ReturnType<typeof summarise>} Summary */
+  /** @param {Summary} summary */
+  function draw(summary) {
+    const angles = /** @type {Sample} */ (sample).angles;
+    const drawing = rose(angles, summary, {axial: measure.axial, size: SIZE, expectedDeg: expected});
+    fill(
+      element,
+      el('p', {class: 'sentence'}, summary.finding || 'Looking for directions.'),
+      needed(summary, target),
+      svg(drawing, {identifier: 'finding-rose'}),
+      half(summary, target),
+      el('p', {class: 'help'}, `${sampleName(/** @type {Sample} */ (sample))}: ${count(angles.length, 'reading')}${summary.bedforms ? ` on ${count(summary.bedforms, 'dune')}` : ''}.`),
+      numbers(summary, measure, expected),
+      summary.notes.length > 0 && el('ul', {class: 'notes'}, summary.notes.map((note) => el('li', {}, note))),
+    );
+  }
+}
 
 /**
  * How many more dunes or readings the target asks for.
@@ -72,10 +79,8 @@ function needed(summary, target) {
  * @param {number | null} target
  */
 function half(summary, target) {
-  const {ci95_low_deg: low, ci95_high_deg: high, axial} = summary;
-  if (typeof low !== 'number' || typeof high !== 'number') return null;
-  const period = axial ? 180 : 360;
-  const halfWidth = ((((high - low) % period) + period) % period) / 2;
+  const halfWidth = summary.ci95_half_width_deg;
+  if (halfWidth === null) return null;
   const width = Math.round(Math.min(1, halfWidth / WIDEST_DEG) * 20);
   const mark = target === null ? '' : ` t${Math.round(Math.min(1, target / WIDEST_DEG) * 20)}`;
   return el(

@@ -11,26 +11,29 @@ const MARK_MS = 2_000;
  * @param {object} deps
  * @param {() => Promise<{record: string, set: Record<string, unknown>, photos: number} | null>} deps.save null: it was refused
  * @param {(record: string) => Promise<unknown>} deps.undo
+ * @param {HTMLElement} deps.beside stands beside the status, always
  * @param {AbortSignal} deps.signal
  */
-export function saveBar({save, undo, signal}) {
+export function saveBar({save, undo, beside, signal}) {
   const status = el('p', {class: 'status', role: 'status'});
   const back = el('button', {type: 'button', class: 'undo', hidden: true}, 'Undo');
   const mark = el('span', {class: 'mark', 'aria-hidden': 'true'});
   const word = el('span', {}, 'Save');
   const button = el('button', {type: 'button', class: 'save', onclick: () => void press()}, mark, word);
-  const element = el('div', {class: 'save_bar'}, el('div', {class: 'status_line'}, status, back), button);
+  const element = el('div', {class: 'save_bar'}, el('div', {class: 'status_line'}, status, back, beside), button);
   let fixText = '';
   /** @type {string | null} said in place of the fix */
   let said = null;
   /** @type {ReturnType<typeof setTimeout>[]} */
   let timers = [];
+  let refused = false;
   signal.addEventListener('abort', calm);
 
   function calm() {
     timers.forEach(clearTimeout);
     timers = [];
     said = null;
+    refused = false;
     back.hidden = true;
     unmark();
     say(status, fixText);
@@ -85,8 +88,16 @@ export function saveBar({save, undo, signal}) {
       fixText = text;
       if (said === null) say(status, text);
     },
-    tell,
     calm,
+    /** @param {string} text why nothing was saved; stands until something is answered */
+    refuse(text) {
+      calm();
+      refused = true;
+      tell(text);
+    },
+    forgive() {
+      if (refused) calm();
+    },
   };
 }
 

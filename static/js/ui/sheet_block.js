@@ -31,6 +31,7 @@ import {plainField} from './plain_field.js';
  * @property {SheetDeclaration} sheet
  * @property {Answers} answers
  * @property {(kind: string) => import('./choice.js').Option[]} referable
+ * @property {number | null} stepDeg to which bearings are read
  * @property {(key: string) => void} toggle
  * @property {(key: string) => void} next
  */
@@ -67,7 +68,8 @@ export function sheetBlock(block, deps) {
       widgets.push([block.measure, widget]);
       content.push(widget.element);
       const figure = widget.element.querySelector('.number');
-      if (meaning) figure ? figure.after(meaning.sentence) : content.push(meaning.sentence);
+      if (figure) figure.append(...(meaning ? [meaning.sentence] : []), problem);
+      else content.push(problem);
       for (const companion of block.companions) {
         const words = VOCABULARIES[companion.vocabulary ?? ''].map(({value, label}) => ({value, label}));
         const row = chips(companion.label, words, (value) => answers.set(companion.name, value));
@@ -76,7 +78,7 @@ export function sheetBlock(block, deps) {
         figure ? widget.element.insertBefore(captioned, widget.element.lastElementChild) : content.push(captioned);
       }
     }
-    content.push(problem);
+    if (!block.measure) content.push(problem);
     for (const field of block.plain) {
       const widget = plainField(field, (value) => answers.set(field.name, value), deps.referable);
       widgets.push([field, widget]);
@@ -95,6 +97,7 @@ export function sheetBlock(block, deps) {
     const wrong = fields().map((field) => problemWith(field, values[field.name])).find(Boolean) ?? '';
     say(problem, wrong || refused);
     problem.hidden = !problem.textContent;
+    if (meaning) meaning.sentence.hidden = !problem.hidden;
     summarise(said, block, answers, deps.referable);
   }
 
@@ -110,6 +113,11 @@ export function sheetBlock(block, deps) {
       if (open) build();
       else fill(body);
       if (!open) [widgets, meaning] = [[], null];
+      show();
+    },
+    /** Something was answered: what was refused may be mended. */
+    changed() {
+      refused = '';
       show();
     },
     /** @param {string} text why the sheet could not be saved */
@@ -132,7 +140,8 @@ function measureWidget(field, deps, meaning, key) {
   const change = (value) => deps.answers.set(field.name, value);
   if (field.type === 'choice') return measuredChoice(field, change);
   if (['number', 'integer', 'direction', 'orientation'].includes(field.type)) {
-    return numberPad(field, {change, next: () => deps.next(key), drawing: meaning?.drawing ?? null});
+    const isWhole = field.type !== 'number' && (deps.stepDeg ?? 1) >= 1;
+    return numberPad(field, {change, decimals: isWhole ? 0 : field.decimals ?? 0, next: () => deps.next(key), drawing: meaning?.drawing ?? null});
   }
   return plainField(field, change, deps.referable);
 }

@@ -11,17 +11,18 @@ import {sheetBlock} from './sheet_block.js';
  * @param {import('../sheet/declared.js').SheetDeclaration} deps.sheet
  * @param {Answers} deps.answers
  * @param {string[]} deps.switchedOn optional fields of the survey
+ * @param {number | null} deps.stepDeg to which bearings are read
  * @param {import('./sheet_block.js').BlockDeps['referable']} deps.referable
  * @param {HTMLElement} deps.scroller what scrolls
  * @param {AbortSignal} deps.signal
  */
-export function sheetForm({sheet, answers, switchedOn, referable, scroller, signal}) {
+export function sheetForm({sheet, answers, switchedOn, stepDeg, referable, scroller, signal}) {
   /** @type {string | null} */
   let openKey = null;
   const made = blocks(sheet, switchedOn).map((block) => ({
     key: block.key,
     names: [block.measure, ...block.companions, ...block.plain].map((field) => field?.name),
-    ...sheetBlock(block, {sheet, answers, referable, toggle, next}),
+    ...sheetBlock(block, {sheet, answers, referable, stepDeg, toggle, next}),
   }));
   const element = el('div', {class: 'sheet'}, made.map((block) => block.element));
 
@@ -53,7 +54,7 @@ export function sheetForm({sheet, answers, switchedOn, referable, scroller, sign
     open((later.find((block) => block.isEmpty()) ?? made[from + 1] ?? made[from]).key, true);
   }
 
-  answers.watch(() => made.forEach((block) => block.show()), signal);
+  answers.watch(() => made.forEach((block) => block.changed()), signal);
   made.forEach((block) => block.show());
   return {
     element,

@@ -68,7 +68,7 @@ export async function openSheet({notebook, position, clock}) {
   }
 
   keepDay();
-  if (!state.values.how_read) state.values.how_read = 'hand_compass';
+  if (!state.values.how_read) state = withDefault(state, 'how_read', 'hand_compass');
 
   const sheet = {
     values: () => state.values,
@@ -82,7 +82,7 @@ export async function openSheet({notebook, position, clock}) {
       signal?.addEventListener('abort', () => listeners.delete(listener), {once: true});
     },
     /** Whether anything was answered that a new sheet would not hold. */
-    isBegun: () => photos.length > 0 || Object.keys(state.values).some((name) => name !== 'how_read' && !state.carried.includes(name)),
+    isBegun: () => photos.length > 0 || Object.keys(state.values).some((name) => !state.carried.includes(name)),
     /**
      * @param {string} name
      * @param {unknown} value undefined: not looked at
@@ -136,6 +136,16 @@ export async function openSheet({notebook, position, clock}) {
     close: () => lateFixes.close(),
   };
   return sheet;
+}
+
+/**
+ * @param {Draft} state
+ * @param {string} name
+ * @param {unknown} value stands there as if it had been carried over
+ * @returns {Draft}
+ */
+function withDefault(state, name, value) {
+  return {...state, values: {...state.values, [name]: value}, carried: [...state.carried, name]};
 }
 
 /**

@@ -24,8 +24,7 @@ export function createShellUpdate({app, shell, workers, reload}) {
 
   async function register() {
     if (!workers) return;
-    const address = workerAddress();
-    registration = await workers.register(/** @type {string} */ (address), {scope: './', updateViaCache: 'none'});
+    registration = await workers.register('../sw.js', {scope: './', updateViaCache: 'none'});
     note();
     registration.addEventListener('updatefound', () => registration?.installing?.addEventListener('statechange', note));
     await workers.ready;
@@ -49,11 +48,4 @@ export function createShellUpdate({app, shell, workers, reload}) {
       registration?.waiting?.postMessage('take over');
     },
   };
-}
-
-/** The worker's address, in the wrapping that browsers with trusted types ask for. */
-function workerAddress() {
-  const address = '../sw.js';
-  const types = /** @type {any} */ (globalThis).trustedTypes;
-  return types?.createPolicy('ergbook-worker', {createScriptURL: () => address}).createScriptURL(address) ?? address;
 }

@@ -80,6 +80,7 @@ export function siteList({notebook, hand, position}) {
     for (const {site, line: made, way: where} of lines) {
       const chosen = site.record === hand.values().site;
       made.classList.toggle('chosen', chosen);
+      if (made.children[1] instanceof HTMLElement) made.children[1].hidden = !chosen;
       made.firstElementChild?.setAttribute('aria-pressed', String(chosen));
       say(where, fix ? wayText(fix, site) : '');
     }
