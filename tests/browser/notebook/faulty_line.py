@@ -18,6 +18,7 @@ from typing import Any
 
 BLANK = b"<!doctype html><meta charset=utf-8><title>Blank</title><p id=said></p>"
 PORTAL = b"<!doctype html><title>Welcome</title><p>Please sign in to use this network.</p>"
+STRANGER = b'{"status": "ok", "received_through": 9, "results": [{"n": 1, "status": "stored", "seq": 9}]}'
 CSP = (
     "default-src 'none'; script-src 'self'; style-src 'self'; connect-src 'self'; img-src 'self' blob:; "
     "require-trusted-types-for 'script'"
@@ -32,6 +33,7 @@ class Fault:
     path: re.Pattern[str]
     action: str
     times: float
+    share: float
     released: threading.Event = field(default_factory=threading.Event)
 
 
@@ -64,9 +66,15 @@ class Line:
     def address(self) -> str:
         return f"http://127.0.0.1:{self.server.server_address[1]}"
 
-    def fault(self, action: str, method: str = "POST", path: str = r"/entries$", times: float = 1) -> Fault:
-        """Let something go wrong: refuse, cut (the request, half way), swallow (the answer), hang, portal."""
-        fault = Fault(method, re.compile(path), action, times)
+    def fault(
+        self, action: str, method: str = "POST", path: str = r"/entries$", *, times: float = 1, share: float = 0.5
+    ) -> Fault:
+        """Let something go wrong with requests that fit.
+
+        refuse; cut or cut_answer (after `share` of the bytes); swallow (the whole answer); hang
+        (until healed); portal and stranger (somebody else's page or JSON instead of an answer).
+        """
+        fault = Fault(method, re.compile(path), action, times, share)
         self.faults.append(fault)
         return fault
 
@@ -111,10 +119,10 @@ class _Handler(BaseHTTPRequestHandler):
             fault.released.wait(60)
             action = "refuse"
         status = 0
-        if action in ("pass", "swallow"):
+        if action in ("pass", "swallow", "cut_answer"):
             status, headers, answer = self._ask(body)
-        elif action == "cut":
-            self._ask_half(body)
+        elif fault and action == "cut":
+            self._ask_part(body, fault.share)
         self.line.seen.append(
             Seen(self.command, self.path, body, self.headers.get("Content-Encoding", ""), status if action == "pass" else 0)
         )
@@ -122,6 +130,10 @@ class _Handler(BaseHTTPRequestHandler):
             self._answer(status, headers, answer)
         elif action == "portal":
             self._answer(200, {"Content-Type": "text/html"}, PORTAL)
+        elif action == "stranger":
+            self._answer(200, {"Content-Type": "application/json"}, STRANGER)
+        elif fault and action == "cut_answer":
+            self._answer(status, headers, answer, share=fault.share)
         else:
             with suppress(OSError):
                 self.connection.shutdown(socket.SHUT_RDWR)
@@ -140,12 +152,13 @@ class _Handler(BaseHTTPRequestHandler):
         finally:
             store.close()
 
-    def _ask_half(self, body: bytes) -> None:
+    def _ask_part(self, body: bytes, share: float) -> None:
         with socket.create_connection(("127.0.0.1", self.line.store_port), timeout=10) as store:
             head = f"{self.command} {self.path} HTTP/1.1\r\n" + "".join(f"{k}: {v}\r\n" for k, v in self.headers.items())
-            store.sendall(head.encode() + b"\r\n" + body[: len(body) // 2])
+            whole = head.encode() + b"\r\n" + body
+            store.sendall(whole[: int(len(whole) * share)])
 
-    def _answer(self, status: int, headers: dict[str, Any], body: bytes) -> None:
+    def _answer(self, status: int, headers: dict[str, Any], body: bytes, *, share: float = 1) -> None:
         if status == 0:
             return
         with suppress(OSError):
@@ -159,7 +172,7 @@ class _Handler(BaseHTTPRequestHandler):
             self.send_header("Connection", "close")
             self.end_headers()
             if self.command != "HEAD":
-                self.wfile.write(body)
+                self.wfile.write(body[: int(len(body) * share)])
 
     def log_message(self, format: str, *args: Any) -> None:  # noqa: A002  the standard library's name
         return

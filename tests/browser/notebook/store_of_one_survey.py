@@ -42,6 +42,12 @@ class StoreOfOneSurvey:
         with self.app.app_context(), write() as own:
             return say(own, self.survey, by=self.lead, kind=kind, values=values, record=record)
 
+    def say_sites(self, count: int) -> None:
+        """Say as many sites, in one transaction."""
+        with self.app.app_context(), write() as session:
+            for number in range(count):
+                self.say("site", {"name": f"Site {number}", "lat_deg": 20.0, "lon_deg": 10.0}, session=session)
+
     def joining_code(self) -> str:
         with self.app.app_context(), write() as session:
             return make_joining_code(session, self.survey, secret=self.app.secret_key, who="Lead")

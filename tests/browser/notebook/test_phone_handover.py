@@ -63,7 +63,7 @@ def test_an_answer_lost_after_the_commit_doubles_nothing(joined: NotebookPage, l
     assert joined.counts()["unsent"] == 0
 
 
-@pytest.mark.parametrize("fault", ["refuse", "cut", "portal"])
+@pytest.mark.parametrize("fault", ["refuse", "cut", "portal", "stranger"])
 def test_a_line_that_fails_acknowledges_nothing(joined: NotebookPage, line: Line, store: StoreOfOneSurvey, fault: str) -> None:
     joined.save(store.site, 10)
     line.fault(fault, "*", r"/api/", times=3)
@@ -73,6 +73,20 @@ def test_a_line_that_fails_acknowledges_nothing(joined: NotebookPage, line: Line
     assert ledger_numbers(store, joined) == []
     assert joined.hand_over()["phase"] == "idle"
     assert ledger_numbers(store, joined) == [1]
+
+
+@pytest.mark.parametrize("fault", ["cut", "cut_answer"])
+def test_cut_anywhere_every_reading_is_at_base_once(joined: NotebookPage, line: Line, store: StoreOfOneSurvey, fault: str) -> None:
+    for step in range(11):
+        joined.save(store.site, step)
+        line.fault(fault, share=step / 10 if fault == "cut" else step / 11)
+        assert joined.hand_over()["phase"] == "offline"
+        assert joined.counts()["unsent"] > 0
+    assert joined.hand_over()["phase"] == "idle"
+    assert ledger_numbers(store, joined) == list(range(1, 12))
+    assert [row["crest_deg"] for row in store.observations()] == list(range(11))
+    assert joined.counts()["unsent"] == 0
+    assert store.is_sound()
 
 
 def test_a_batch_that_times_out_is_halved_until_it_passes(joined: NotebookPage, line: Line, store: StoreOfOneSurvey) -> None:
@@ -126,6 +140,17 @@ def test_an_entry_that_base_sets_aside_stays_marked_and_stops_no_other(
     assert [row["crest_deg"] for row in store.observations()] == [10, 30, 40]
     assert joined.counts()["setAside"] == 0
     assert all(row["atBase"] for row in joined.observations())
+
+
+def test_one_bad_entry_among_500_and_499_arrive(joined: NotebookPage, line: Line, store: StoreOfOneSurvey) -> None:
+    joined.run(SAVE_MANY, [store.site, 249])
+    joined.save(store.site, -1)
+    joined.run(SAVE_MANY, [store.site, 250])
+    assert joined.hand_over()["phase"] == "idle"
+    assert len(line.requests("POST")) == 1
+    assert ledger_numbers(store, joined) == [n for n in range(1, 501) if n != 250]
+    assert [n for n, _ in store.set_aside()] == [250]
+    assert (joined.counts()["unsent"], joined.counts()["setAside"]) == (0, 1)
 
 
 def test_a_set_aside_change_is_mended_by_the_next_change(joined: NotebookPage, store: StoreOfOneSurvey) -> None:
@@ -249,6 +274,50 @@ def test_what_others_say_comes_back_and_two_versions_show(
     assert row["crest_deg"] == store.observations()[0]["crest_deg"]
 
 
+def test_a_browser_killed_while_it_receives_goes_on_where_it_was(
+    joined: NotebookPage, profile: Profile, line: Line, store: StoreOfOneSurvey
+) -> None:
+    store.say_sites(700)
+    # The first page comes, the second never does.
+    line.fault("pass", "GET", r"/changes$")
+    line.fault("hang", "GET", r"/changes$")
+    joined.run("() => { void book.handover.now(); }")
+    joined.wait_until(lambda: joined.run("() => book.kept.cursor") > 100)
+    profile.phone.kill()
+    line.heal()
+    again = profile.page(line.address)
+    again.open(store.survey)
+    assert len(again.run("() => book.sites()")) > 100
+    assert again.hand_over()["phase"] == "idle"
+    assert len(again.run("() => book.sites()")) == 701
+    assert again.run("() => book.kept.cursor") == len(store.entries())
+
+
+@pytest.mark.parametrize("years", [-3, 3])
+def test_a_clock_that_is_years_off_changes_no_merge_and_is_noticed(
+    joined: NotebookPage, profile: Profile, line: Line, store: StoreOfOneSurvey, years: int
+) -> None:
+    off = years * 365 * 86_400_000
+    record = joined.save(store.site, 10)["record"]
+    joined.hand_over()
+    wrong = profile.page(line.address, deps=f"{{now: () => Date.now() + {off}}}")
+    joined.run("() => book.close()")
+    wrong.open(store.survey)
+    wrong.save(store.site, 20, record=record)
+    state = wrong.hand_over()
+    assert (state["phase"], wrong.counts()["unsent"]) == ("idle", 0)
+    assert abs(state["offsetMs"] + off) < 5000
+    store.say("observation", {"crest_read_deg": 30}, record=record)
+    wrong.hand_over()
+    wrong.save(store.site, 40, record=record)
+    wrong.hand_over()
+    [row] = wrong.observations()
+    assert (row["crest_deg"], row["twoVersions"]) == (40, [])
+    [kept] = store.observations()
+    assert kept["crest_deg"] == 40
+    assert abs(json.loads(store.entries(device=device_of(wrong))[-1][2])["offset"] + off) < 5000
+
+
 def test_a_missing_number_stops_and_is_reported(joined: NotebookPage, store: StoreOfOneSurvey) -> None:
     before = joined.run("() => book.kept.cursor")
     store.say("site", {"name": "A", "lat_deg": 1, "lon_deg": 2})
@@ -326,6 +395,24 @@ def test_a_photo_that_a_stranger_says_is_there_is_sent_all_the_same(
     line.fault("portal", "HEAD", r"/photos/")
     assert joined.hand_over()["phase"] == "idle"
     assert len(line.requests("PUT", r"/photos/")) == 1
+
+
+def test_a_photo_that_base_refuses_is_marked_and_holds_up_no_other(
+    joined: NotebookPage, line: Line, store: StoreOfOneSurvey
+) -> None:
+    fake = joined.run(
+        """(site) => book.save('observation', {site, observed_at: '2026-03-04T05:06:07Z', crest_read_deg: 1}, {photos: [
+            {bytes: new Uint8Array([1, 2, 3]).buffer, thumbnail: new ArrayBuffer(1), width: 1, height: 1}]})""",
+        store.site,
+    )["record"]
+    joined.save_photo(store.site, 10)
+    state = joined.hand_over()
+    assert (state["phase"], state["photosSent"]) == ("idle", 1)
+    assert joined.counts()["unsentPhotos"] == 0
+    [photo] = joined.run("(record) => book.photos(record).map(({isSent, problem}) => ({isSent, problem}))", fake)
+    assert not photo["isSent"]
+    assert photo["problem"]
+    assert len(line.requests("PUT", r"/photos/")) == 2
 
 
 def test_the_queue_empties_by_itself_once_the_line_is_healed(profile: Profile, line: Line, store: StoreOfOneSurvey) -> None:
