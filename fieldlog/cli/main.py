@@ -13,6 +13,7 @@ from fieldlog.errors import Refusal
 
 COMMANDS: Final = {
     "check": "fieldlog.cli.check:check",
+    "compare": "fieldlog.cli.compare:compare",
     "demo": "fieldlog.cli.demo:demo",
     "export": "fieldlog.cli.export:export",
     "import": "fieldlog.cli.import_:import_",

@@ -32,8 +32,8 @@ def published_samples() -> list[tuple[str, list[float], Options]]:
         options: Options = {"axial": True} if case["axial"] else {}
         if "mu0_deg" in case:
             options["against_deg"] = case["mu0_deg"]
-        found.append((f"published {case['id']}: {case['what']}", case["data_deg"], options))
-        found.append((f"{case['id']} with a target", case["data_deg"], {**options, "target_deg": 10}))
+        plain = (f"published {case['id']}: {case['what']}", case["data_deg"], options)
+        found += [plain, (f"{case['id']} with a target", case["data_deg"], {**options, "target_deg": 10})]
     return found
 
 
