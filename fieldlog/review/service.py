@@ -228,7 +228,7 @@ def history(session: AnySession, survey: str, record: str) -> list[Change]:
             select(LedgerEntry.seq, LedgerEntry.received_at).where(
                 LedgerEntry.survey == survey, LedgerEntry.record == record
             )
-        ).tuples().all()
+        ).all()
     )
     by_name = {entry.name: entry for _, entry in numbered}
     changes = []

@@ -229,7 +229,7 @@ def _kinds_of_named_records(
                 LedgerEntry.survey == survey, LedgerEntry.record.in_(named[start : start + CHUNK])
             )
         )
-        kinds.update(found.tuples().all())
+        kinds.update(found.all())
     return kinds
 
 

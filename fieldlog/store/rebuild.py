@@ -97,7 +97,7 @@ def _check_numbering(session: AnySession, survey: str) -> Iterator[Fault]:
     through: dict[str, int] = dict(
         session.execute(
             select(DeviceCounter.device, DeviceCounter.received_through).where(DeviceCounter.survey == survey)
-        ).tuples().all()
+        ).all()
     )
     for device in sorted(counts.keys() | through.keys()):
         if not counts.get(device, 0) == highest.get(device, 0) == through.get(device, 0):

@@ -35,7 +35,7 @@ def list_surveys(session: AnySession) -> list[SurveyLine]:
     """All surveys of the store by name."""
     counts: dict[str, dict[str, int]] = {
         table.name: dict(
-            session.execute(select(table.c.survey, func.count()).group_by(table.c.survey)).tuples().all()
+            session.execute(select(table.c.survey, func.count()).group_by(table.c.survey)).all()
         )
         for table in (observations, sites)
     }
@@ -132,9 +132,7 @@ def site_row(session: AnySession, survey: str, record: str) -> Row:
 def crew_names(session: AnySession, survey: str) -> dict[str, str]:
     """Record -> name of everybody in the survey."""
     return dict(
-        session.execute(select(crew.c.record, crew.c.name).where(crew.c.survey == survey).order_by(crew.c.name))
-        .tuples()
-        .all()
+        session.execute(select(crew.c.record, crew.c.name).where(crew.c.survey == survey).order_by(crew.c.name)).all()
     )
 
 
