@@ -109,15 +109,15 @@ class Server:
 
     def start(self, **environment: str) -> Server:
         """Start it and wait until it answers."""
-        shown = (self.data_dir / "server.log").open("a", encoding="utf-8")
-        self.process = subprocess.Popen(
-            [sys.executable, "-m", "fieldlog.cli.main", *self.command],
-            env={**os.environ, "ERGBOOK_DATA_DIR": str(self.data_dir), "ERGBOOK_PORT": str(self.port), **environment},
-            stdout=shown,
-            stderr=subprocess.STDOUT,
-            text=True,
-            cwd=ROOT,
-        )
+        with (self.data_dir / "server.log").open("a", encoding="utf-8") as shown:
+            self.process = subprocess.Popen(
+                [sys.executable, "-m", "fieldlog.cli.main", *self.command],
+                env={**os.environ, "ERGBOOK_DATA_DIR": str(self.data_dir), "ERGBOOK_PORT": str(self.port), **environment},
+                stdout=shown,
+                stderr=subprocess.STDOUT,
+                text=True,
+                cwd=ROOT,
+            )
         deadline = time.monotonic() + 60
         while time.monotonic() < deadline:
             if self.process.poll() is not None:

@@ -3,7 +3,7 @@
 import {Replica} from '../ledger/replica.js';
 import {CONSTANTS} from '../sheet/declared.js';
 import {draftsOf} from '../store/drafts.js';
-import {keepOffset, load} from '../store/load.js';
+import {keepLearnt, load} from '../store/load.js';
 import {keepPhoto} from '../store/photos.js';
 import {Problem} from '../store/problem.js';
 import {saveEntries} from '../store/save.js';
@@ -245,7 +245,7 @@ export class Notebook {
     this.runner.set({offsetMs});
     if (offsetMs === this.kept.offsetMs) return;
     this.kept.offsetMs = offsetMs;
-    await keepOffset(this.connection, offsetMs);
+    await keepLearnt(this.connection, 'offset', offsetMs);
   }
 
   #build() {

@@ -4,6 +4,7 @@
  */
 
 import {beginEpoch} from '../store/answers.js';
+import {keepLearnt} from '../store/load.js';
 import {Problem} from '../store/problem.js';
 import {waitMillis} from './backoff.js';
 import {NewEpoch, NoConnection, Refused, Stopped, WrongStore} from './failures.js';
@@ -65,8 +66,8 @@ export class Runner {
     this.forgetChances = () => {};
     /** @type {HandoverState} */
     this.state = {
-      phase: 'idle', sent: 0, of: 0, photosSent: 0, photosOf: 0, lastAt: null, message: '', mend: '',
-      offsetMs: desk.kept.offsetMs,
+      phase: 'idle', sent: 0, of: 0, photosSent: 0, photosOf: 0, lastAt: desk.kept.lastAt, message: '',
+      mend: '', offsetMs: desk.kept.offsetMs,
     };
   }
 
@@ -149,8 +150,10 @@ export class Runner {
     });
     try {
       await this.#throughEpochs(() => this.#handOver());
+      const lastAt = new Date(this.desk.deps.now()).toISOString();
+      await keepLearnt(this.desk.connection, 'lastAt', lastAt);
       this.failures = 0;
-      this.set({phase: 'idle', message: '', mend: '', lastAt: new Date(this.desk.deps.now()).toISOString()});
+      this.set({phase: 'idle', message: '', mend: '', lastAt});
       return POLL_MS;
     } catch (error) {
       this.failures += 1;

@@ -22,14 +22,6 @@ export function newDevice(random) {
 }
 
 /**
- * @param {string} text
- * @returns {boolean}
- */
-export function isDevice(text) {
-  return NAME.test(`${text}-1`);
-}
-
-/**
  * The name of the entry that `device` numbered `n`.
  * @param {string} device
  * @param {number} n
@@ -49,22 +41,4 @@ export function splitName(name) {
   const n = match ? Number(match[2]) : 0;
   if (!match || n >= COUNTER_LIMIT) throw new RangeError(`not the name of an entry: ${name}`);
   return {device: match[1], n};
-}
-
-/**
- * The name as a UUID of version 8 (RFC 9562): device in the high, counter in the low free bits.
- * @param {string} name
- * @returns {string}
- */
-export function nameToUuid(name) {
-  const {device, n} = splitName(name);
-  let bits = 0n;
-  for (const character of device) bits = (bits << 5n) | BigInt(ALPHABET.indexOf(character));
-  const free = (bits << 48n) | BigInt(n);
-  const high = free >> 74n;
-  const middle = (free >> 62n) & 0xfffn;
-  const low = free & ((1n << 62n) - 1n);
-  const whole = (high << 80n) | (8n << 76n) | (middle << 64n) | (2n << 62n) | low;
-  const hex = whole.toString(16).padStart(32, '0');
-  return [hex.slice(0, 8), hex.slice(8, 12), hex.slice(12, 16), hex.slice(16, 20), hex.slice(20)].join('-');
 }

@@ -37,6 +37,7 @@ import {whenAll} from './open.js';
  * @property {Counter} counter
  * @property {number} cursor the last seq received without a gap
  * @property {number | null} offsetMs store time minus phone time, as last learnt
+ * @property {string | null} lastAt UTC, when a hand-over last ended with nothing left
  * @property {KeptEntry[]} entries
  * @property {Waiting[]} queue
  * @property {PhotoKept[]} photos
@@ -50,11 +51,12 @@ export function load(connection) {
   return connection.transact(['meta', 'ledger', 'queue', 'photos'], 'readonly', (transaction, done) => {
     const meta = transaction.objectStore('meta');
     const requests = [
-      ...['info', 'counter', 'cursor', 'offset'].map((key) => meta.get(key)),
+      ...['info', 'counter', 'cursor', 'offset', 'lastAt'].map((key) => meta.get(key)),
       ...['ledger', 'queue', 'photos'].map((name) => transaction.objectStore(name).getAll()),
     ];
-    whenAll(requests, ([info, counter, cursor, offsetMs, entries, queue, photos]) => {
-      done(info ? {info, counter, cursor: cursor ?? 0, offsetMs: offsetMs ?? null, entries, queue, photos} : null);
+    whenAll(requests, ([info, counter, cursor, offsetMs, lastAt, entries, queue, photos]) => {
+      const learnt = {cursor: cursor ?? 0, offsetMs: offsetMs ?? null, lastAt: lastAt ?? null};
+      done(info ? {info, counter, ...learnt, entries, queue, photos} : null);
     });
   });
 }
@@ -96,13 +98,15 @@ export function changeInfo(connection, changes) {
 }
 
 /**
+ * What hand-over learnt by the way.
  * @param {Connection} connection
- * @param {number} offsetMs
+ * @param {'offset' | 'lastAt'} key
+ * @param {number | string} value
  * @returns {Promise<void>}
  */
-export function keepOffset(connection, offsetMs) {
+export function keepLearnt(connection, key, value) {
   return connection.transact(['meta'], 'readwrite', (transaction) => {
-    transaction.objectStore('meta').put(offsetMs, 'offset');
+    transaction.objectStore('meta').put(value, key);
   });
 }
 

@@ -49,6 +49,24 @@ def test_all_is_at_base_after_handing_over_and_the_clock_offset_is_learnt(
     assert abs(json.loads(store.entries(device=device_of(joined))[-1][2])["offset"]) < 5000
 
 
+def test_when_it_was_last_handed_over_is_known_to_the_next_page(
+    joined: NotebookPage, profile: Profile, line: Line, store: StoreOfOneSurvey
+) -> None:
+    last = joined.hand_over()["lastAt"]
+    other = profile.page(line.address)
+    other.open(store.survey)
+    assert other.run("() => book.handover.state.lastAt") == last
+
+
+def test_a_browser_that_cannot_compress_sends_plain(joined: NotebookPage, line: Line, store: StoreOfOneSurvey) -> None:
+    joined.run("() => { delete window.CompressionStream; }")
+    joined.save(store.site, 10)
+    assert joined.hand_over()["phase"] == "idle"
+    [batch] = line.requests("POST")
+    assert batch.encoding == ""
+    assert len(json.loads(batch.body)["entries"]) == 1
+
+
 def test_an_answer_lost_after_the_commit_doubles_nothing(joined: NotebookPage, line: Line, store: StoreOfOneSurvey) -> None:
     for crest in (10, 20, 30):
         joined.save(store.site, crest)
