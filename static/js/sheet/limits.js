@@ -31,7 +31,7 @@ export function asKept(field, value) {
 }
 
 /**
- * What is wrong with `value` in `field`; '' where nothing is.
+ * What is wrong with `value` in `field`, to stand beside its label; '' where nothing is.
  * @param {FieldDeclaration} field
  * @param {unknown} value
  * @returns {string}
@@ -40,7 +40,7 @@ export function problemWith(field, value) {
   if (value === undefined || value === null || reasonAbsent(value)) return '';
   if (typeof value === 'number') return problemWithNumber(field, value);
   if (typeof value === 'string' && [...value].length > field.max_length) {
-    return `${field.label}: at most ${field.max_length} characters.`;
+    return `At most ${field.max_length} characters.`;
   }
   return '';
 }
@@ -50,16 +50,16 @@ export function problemWith(field, value) {
  * @param {number} value
  */
 function problemWithNumber(field, value) {
-  if (!Number.isFinite(value)) return `${field.label}: this is not a number.`;
+  if (!Number.isFinite(value)) return 'This is not a number.';
   if (field.type === 'direction' && (value < 0 || value > 360)) {
-    return `${field.label}: ${value} is no bearing. Bearings run from 0 to 359.`;
+    return `${value} is no bearing: they run from 0 to 359.`;
   }
   if (field.type === 'orientation' && (value < 0 || value >= 180)) {
-    return `${field.label}: ${value} is no axis. Axes run from 0 to 179.`;
+    return `${value} is no axis: they run from 0 to 179.`;
   }
-  if (field.type === 'integer' && !Number.isInteger(value)) return `${field.label}: a whole number, please.`;
+  if (field.type === 'integer' && !Number.isInteger(value)) return 'Only whole numbers.';
   const unit = field.unit && field.unit !== 'deg' ? ` ${field.unit}` : '';
-  if (field.minimum !== null && value < field.minimum) return `${field.label}: at least ${field.minimum}${unit}.`;
-  if (field.maximum !== null && value > field.maximum) return `${field.label}: at most ${field.maximum}${unit}.`;
+  if (field.minimum !== null && value < field.minimum) return `At least ${field.minimum}${unit}.`;
+  if (field.maximum !== null && value > field.maximum) return `At most ${field.maximum}${unit}.`;
   return '';
 }

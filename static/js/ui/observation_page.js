@@ -46,7 +46,7 @@ export function mountObservation({main, dock, signal, detail}, parts) {
     const wrong = OBSERVATION.fields.find((field) => problemWith(field, answers.values()[field.name]));
     if (wrong) {
       form.refuse(wrong.name, problemWith(wrong, answers.values()[wrong.name]));
-      return say(status, problemWith(wrong, answers.values()[wrong.name]));
+      return say(status, `${wrong.label}: ${problemWith(wrong, answers.values()[wrong.name])}`);
     }
     const changes = answers.changes();
     if (!Object.keys(changes).length) return say(status, 'Nothing was changed.');

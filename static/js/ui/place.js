@@ -70,7 +70,7 @@ function duneStepper(hand) {
     element: el('div', {class: 'dune_stepper'}, less, number, more),
     show() {
       const value = hand.values().bedform;
-      say(number, value === undefined ? 'none' : String(value));
+      say(number, value === undefined ? '–' : String(value));
       less.disabled = !(Number(value) > 1);
       say(more, value === undefined ? 'First dune' : 'Next dune');
     },

@@ -48,7 +48,7 @@ export function mountReading({main, dock, signal}, parts) {
     const [problem] = hand.problems();
     if (problem) {
       if (problem.field) form.refuse(problem.field, problem.text);
-      bar.refuse(problem.text);
+      bar.refuse(`${problem.label}: ${problem.text}`);
       return null;
     }
     const saved = await hand.save();

@@ -64,8 +64,7 @@ export function sampleView(sample, measure, siteRecord, {notebook, summaries}) {
  * @param {number | null} target
  */
 function needed(summary, target) {
-  if (target === null) return null;
-  if (summary.enough) return el('p', {class: 'enough'}, `Enough for ±${target}°.`);
+  if (target === null || summary.enough) return null;
   const dunes = summary.bedforms_needed;
   const readings = summary.readings_needed;
   if (typeof dunes === 'number' && dunes > 0) return el('p', {class: 'needed'}, el('b', {}, `${dunes} more`), ` ${dunes === 1 ? 'dune' : 'dunes'} for ±${target}°`);
@@ -79,15 +78,15 @@ function needed(summary, target) {
  * @param {number | null} target
  */
 function half(summary, target) {
-  const halfWidth = summary.ci95_half_width_deg;
-  if (halfWidth === null) return null;
+  if (summary.ci95_half_width_deg === null) return null;
+  const halfWidth = Math.ceil(summary.ci95_half_width_deg - 1e-9); // as the finding says it: never narrower than it is
   const width = Math.round(Math.min(1, halfWidth / WIDEST_DEG) * 20);
   const mark = target === null ? '' : ` t${Math.round(Math.min(1, target / WIDEST_DEG) * 20)}`;
   return el(
     'div',
     {class: 'half'},
-    el('span', {}, `±${halfWidth.toFixed(0)}°`),
-    el('div', {class: `bar${mark}`, role: 'img', 'aria-label': `Half-width of the 95 % interval ${halfWidth.toFixed(0)} degrees${target === null ? '' : `, target ${target}`}`}, el('span', {class: `bar_fill w${width}`})),
+    el('span', {}, `±${halfWidth}°`),
+    el('div', {class: `bar${mark}`, role: 'img', 'aria-label': `Half-width of the 95 % interval ${halfWidth} degrees${target === null ? '' : `, target ${target}`}`}, el('span', {class: `bar_fill w${width}`})),
     target !== null && el('span', {class: 'help'}, `target ±${target}°`),
   );
 }

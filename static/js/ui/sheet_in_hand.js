@@ -15,7 +15,7 @@ import {createLateFixes, fixFields, freshFix} from './late_fixes.js';
 /** @typedef {import('../sensors/position.js').Position} Position */
 /** @typedef {import('../sensors/camera.js').Taken} Taken */
 /** @typedef {import('../sheet/carry.js').Values} Values */
-/** @typedef {{field: string, text: string}} Problem */
+/** @typedef {{field: string, label: string, text: string}} Problem `field` is '' where it is none's */
 /** @typedef {{values: Values, carried: string[], day: string}} Draft */
 /** @typedef {Awaited<ReturnType<typeof openSheet>>} SheetInHand */
 
@@ -256,13 +256,13 @@ function problemsOf(notebook, values, photos) {
   const asked = askedFields(OBSERVATION, notebook.survey()?.optional_fields ?? []);
   for (const field of asked) {
     const text = problemWith(field, values[field.name]);
-    if (text) found.push({field: field.name, text});
-    if (field.required && !values[field.name]) found.push({field: field.name, text: `${field.label}: choose it first.`});
+    if (text) found.push({field: field.name, label: field.label, text});
+    if (field.required && !values[field.name]) found.push({field: field.name, label: field.label, text: 'Choose it first.'});
     if (!field.measure || values[field.name] === undefined || reasonAbsent(values[field.name])) continue;
     const unsaid = companionsOf(OBSERVATION, field).find((other) => !values[other.name]);
-    if (unsaid) found.push({field: field.name, text: `${field.label}: say "${unsaid.label}" too, else the number has no meaning.`});
+    if (unsaid) found.push({field: field.name, label: field.label, text: `Choose "${unsaid.label}" too.`});
   }
   const answers = asked.filter((field) => (field.measure || !field.carries) && values[field.name] !== undefined);
-  if (!answers.length && !photos.length) found.push({field: '', text: 'Nothing read yet: answer one measure, or write a note.'});
+  if (!answers.length && !photos.length) found.push({field: '', label: 'Not saved', text: 'Nothing read yet: answer one measure, or write a note.'});
   return found;
 }

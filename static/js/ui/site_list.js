@@ -65,9 +65,8 @@ export function siteList({notebook, hand, position}) {
     const button = el(
       'button',
       {type: 'button', 'data-site': site.record, onclick: () => hand.set('site', site.record)},
-      el('span', {class: 'name', dir: 'auto'}, site.name),
-      where,
-      el('span', {class: 'count'}, count(readings, 'reading')),
+      el('span', {class: 'name'}, el('bdi', {}, site.name), el('span', {class: 'chosen_mark'}, ' · chosen')),
+      el('span', {class: 'about'}, where, el('span', {class: 'count'}, count(readings, 'reading'))),
     );
     const more = el('p', {class: 'help', dir: 'auto'}, about.join(' · '));
     return {site, line: el('li', {}, button, about.length > 0 && more), way: where};
