@@ -38,7 +38,7 @@ OBSERVATION: Final = Sheet(
         Field(name="bedform_order", type="choice", vocabulary="bedform_order", label="Order", group="where",
               help="Size order of the bedform. Orders are never mixed in one result.", carries="site"),
         Field(name="face", type="choice", vocabulary="face", label="Face", group="where",
-              help="Which face of the dune was read.", carries="dune"),
+              help="Which face of the dune was read.", carries="site"),
         Field(name="dune_type", type="choice", vocabulary="dune_type", label="Dune type", group="where",
               help="The dune's form.", carries="site"),
         Field(name="observed_at", type="time", label="Observed at", group="fix", asked=False, required=True,

@@ -515,7 +515,7 @@ export const SHEETS = {
     "max_length": 500,
     "required": false,
     "measure": false,
-    "carries": "dune",
+    "carries": "site",
     "optional": false,
     "derived_from": [],
     "asked": true,
@@ -2466,5 +2466,5 @@ export const CONSTANTS = {
   "Positions and phone compasses can be wrong. This is no navigation, rescue or engineering-design instrument.",
   "Decisions that can hurt someone rest with local codes and licensed practitioners."
  ],
- "sheet_version": "5592221cd52b"
+ "sheet_version": "ac1cac46d45c"
 };
