@@ -15,7 +15,7 @@ from fieldlog.store.append import say
 from fieldlog.store.db import db
 from fieldlog.store.identity import begin_epoch
 from fieldlog.store.rebuild import check
-from fieldlog.store.tables import LedgerEntry, SetAside, observations, photos
+from fieldlog.store.tables import LedgerEntry, SetAside, TwoVersions, observations, photos
 from fieldlog.store.transaction import write
 from fieldlog.surveys.service import create_survey
 from fieldlog.web.app import create_app
@@ -79,6 +79,12 @@ class StoreOfOneSurvey:
     def photos(self) -> list[dict[str, Any]]:
         with self.app.app_context():
             return [dict(row) for row in db.session.execute(select(photos)).mappings()]
+
+    def two_versions(self) -> list[tuple[str, str]]:
+        """(record, field) of what nobody has chosen between yet."""
+        with self.app.app_context():
+            found = db.session.execute(select(TwoVersions.record, TwoVersions.field))
+            return [(record, field) for record, field in found]
 
     def is_sound(self) -> bool:
         """Whether the tables are what the ledger adds up to."""

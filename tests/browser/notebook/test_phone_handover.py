@@ -185,6 +185,7 @@ def test_a_set_aside_change_is_mended_by_the_next_change(joined: NotebookPage, s
     assert (row["setAside"], row["twoVersions"], row["crest_deg"], row["note"]) == ([], [], 20, "kept")
     [kept] = store.observations()
     assert (kept["crest_deg"], kept["note"]) == (20, "kept")
+    assert store.two_versions() == []
     assert joined.counts()["setAside"] == 0
 
 
@@ -290,6 +291,7 @@ def test_what_others_say_comes_back_and_two_versions_show(
     assert two["field"] == "crest_read_deg"
     assert {version["value"] for version in two["versions"]} == {20, 30}
     assert row["crest_deg"] == store.observations()[0]["crest_deg"]
+    assert store.two_versions() == [(record, "crest_read_deg")]
 
 
 def test_a_browser_killed_while_it_receives_goes_on_where_it_was(
@@ -336,18 +338,24 @@ def test_a_clock_that_is_years_off_changes_no_merge_and_is_noticed(
     assert abs(json.loads(store.entries(device=device_of(wrong))[-1][2])["offset"] + off) < 5000
 
 
-def test_a_missing_number_stops_and_is_reported(joined: NotebookPage, store: StoreOfOneSurvey) -> None:
+@pytest.mark.parametrize("wrong", ["entries.shift()", "entries.reverse()", "through += 1", "last = 0"])
+def test_a_missing_number_stops_and_is_reported(joined: NotebookPage, store: StoreOfOneSurvey, wrong: str) -> None:
     before = joined.run("() => book.kept.cursor")
     store.say("site", {"name": "A", "lat_deg": 1, "lon_deg": 2})
     store.say("site", {"name": "B", "lat_deg": 1, "lon_deg": 2})
     joined.run(
-        """() => {
+        f"""() => {{
             window.plain = deps.fetch;
+            window.spoil = (body) => {{ body.{wrong}; }};
+        }}"""
+    )
+    joined.run(
+        """() => {
             deps.fetch = async (url, init) => {
                 const answer = await plain(url, init);
                 if (!url.includes('/changes')) return answer;
                 const body = await answer.json();
-                body.entries.shift();
+                spoil(body);
                 return new Response(JSON.stringify(body), {headers: {'Content-Type': 'application/json'}});
             };
         }"""
@@ -384,6 +392,48 @@ def test_a_notebook_on_two_phones_stops_and_goes_on_under_a_new_id(
     assert sorted(row["crest_deg"] for row in second.observations()) == [10, 20, 98, 99]
     joined.hand_over()
     assert sorted(row["crest_deg"] for row in joined.observations()) == [10, 20, 98, 99]
+
+
+def test_a_reading_saved_while_a_copied_phones_own_comes_back_is_not_taken_for_it(
+    joined: NotebookPage, twin: Callable[[], Profile], line: Line, store: StoreOfOneSurvey
+) -> None:
+    joined.page.wait_for_timeout(500)
+    second = twin().page(line.address)
+    second.open(store.survey)
+    joined.save(store.site, 20)
+    joined.hand_over()
+    second.run(
+        """(site) => {
+            const plain = deps.fetch;
+            deps.fetch = async (url, init) => {
+                if (url.includes('/changes') && !book.observations().length) {
+                    await book.save('observation', {site, observed_at: '2026-03-04T05:06:07Z', north: 'true', crest_read_deg: 99});
+                }
+                return plain(url, init);
+            };
+        }""",
+        store.site,
+    )
+    second.hand_over()
+    assert second.counts()["unsent"] == 1
+    assert second.hand_over()["phase"] == "stopped"
+    second.join(store.joining_code())
+    assert second.hand_over()["phase"] == "idle"
+    assert sorted(row["crest_deg"] for row in store.observations()) == [20, 99]
+
+
+def test_a_number_that_this_phone_never_gave_stops_it(
+    joined: NotebookPage, twin: Callable[[], Profile], line: Line, store: StoreOfOneSurvey
+) -> None:
+    joined.page.wait_for_timeout(500)
+    second = twin().page(line.address)
+    second.open(store.survey)
+    joined.save(store.site, 20)
+    joined.hand_over()
+    state = second.hand_over()
+    assert (state["phase"], second.observations()) == ("stopped", [])
+    second.join(store.joining_code())
+    assert [row["crest_deg"] for row in second.observations()] == [20]
 
 
 def test_a_photo_goes_once_after_its_entry(joined: NotebookPage, line: Line, store: StoreOfOneSurvey) -> None:
