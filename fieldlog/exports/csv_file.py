@@ -1,23 +1,19 @@
 """The observations as CSV: RFC 4180 (commas, CRLF, quotes doubled), UTF-8 without a mark, a header line.
 
-A spreadsheet runs a cell that begins with = + - or @ as a formula, wherever it came from. Text
-that begins so (or with a tab or a carriage return) therefore gets one apostrophe in front; so does such text that has apostrophes in front already. Taking one apostrophe away from
-what matches `GUARDED` gives back exactly what was typed. Numbers are never touched.
+Text that a spreadsheet would take for a formula has an apostrophe in front (fieldlog.sheet.csv_text);
+numbers are never touched.
 """
 
 from __future__ import annotations
 
 import csv
 import json
-import re
 from pathlib import Path
-from typing import Any, Final
+from typing import Any
 
 from fieldlog.exports.columns import Column, columns_of
 from fieldlog.exports.rows import SurveyRows, plain
-
-RISKY: Final = re.compile(r"'*[=+\-@\t\r]")
-GUARDED: Final = re.compile(r"''*[=+\-@\t\r]")
+from fieldlog.sheet.csv_text import guarded
 
 
 def write_csv(rows: SurveyRows, target: Path) -> None:
@@ -42,12 +38,3 @@ def cell(column: Column, value: Any) -> Any:
         return guarded(value)
     return plain(value)
 
-
-def guarded(text: str) -> str:
-    """Text that no spreadsheet takes for a formula."""
-    return f"'{text}" if RISKY.match(text) else text
-
-
-def unguarded(text: str) -> str:
-    """The text that `guarded` was given."""
-    return text[1:] if GUARDED.match(text) else text
