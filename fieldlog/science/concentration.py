@@ -5,6 +5,8 @@ from __future__ import annotations
 import math
 from typing import Final
 
+import numpy as np
+from numpy.typing import NDArray
 from scipy import special
 
 ALL_BUT_ONE: Final = 1.0 - 1e-15
@@ -60,6 +62,25 @@ def kappa_of(resultant_length: float) -> float | None:
         if abs(step) <= 1e-13 * kappa:
             break
     return kappa
+
+
+def kappas_of(lengths: NDArray[np.float64], largest: float) -> NDArray[np.float64]:
+    """`kappa_of` for an array of lengths, any shape, with `largest` in place of what is beyond it."""
+    most = bessel_ratio(largest)
+    r = np.minimum(lengths, most)
+    low, high = 2 * r + r**3 + 5 * r**5 / 6, 1 / (2 * (1 - r) - (1 - r) ** 2 - (1 - r) ** 3)
+    kappa = np.where(r < 0.53, low, np.where(r < 0.85, -0.4 + 1.39 * r + 0.43 / (1 - r), high))
+    kappa = np.maximum(kappa, 1e-12)
+    for _ in range(40):
+        ratio = special.i1e(kappa) / special.i0e(kappa)
+        slope = 1 - ratio / kappa - ratio * ratio
+        slope = np.where(kappa > 1e4, (1 + 1 / kappa) / (2 * kappa * kappa), slope)
+        slope = np.where(kappa < 1e-4, 0.5, slope)
+        step = (ratio - r) / slope
+        kappa = np.maximum(kappa - step, kappa / 2)
+        if np.all(np.abs(step) <= 1e-13 * kappa * np.maximum(1.0, kappa)):
+            break
+    return np.asarray(np.where(r < 1e-8, 0.0, np.where(lengths >= most, largest, kappa)))
 
 
 def kappa_corrected(kappa: float | None, n: int) -> float | None:

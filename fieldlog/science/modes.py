@@ -12,7 +12,7 @@ from numpy.typing import NDArray
 from scipy import special
 
 from fieldlog.science.angles import Angles, reduced
-from fieldlog.science.concentration import kappa_of
+from fieldlog.science.concentration import kappa_of, kappas_of
 from fieldlog.science.moments import direction_deg, mean_and_length
 
 FEWEST: Final = 20
@@ -21,6 +21,8 @@ MOST_PLACES: Final = 1440
 LARGEST_KAPPA: Final = 500.0
 SMALLEST_KAPPA: Final = 1.0
 """A component flatter than this is a background, not a mode."""
+SETTLED: Final = (1e-9, 1e-12)
+"""Largest movement at which EM stops: while it sorts the starts, and at its end."""
 LEAST_APART_DEG: Final = 30.0
 """Components nearer than this are the shape of one mode, not two."""
 
@@ -59,7 +61,9 @@ def find_modes(angles_deg: Angles) -> list[Mode] | None:
         return None
     best, lowest = uniform(n), uniform(n).bic(n)
     for count in (1, 2, 3):
-        found = fit(angles_deg, count)
+        # The log-likelihood that this many modes must have to be chosen.
+        least = ((3 * count - 1) * math.log(n) - lowest) / 2
+        found = fit(angles_deg, count, least=least)
         if (count == 1 or _distinct(found.modes, n)) and found.bic(n) < lowest:
             best, lowest = found, found.bic(n)
     return best.modes
@@ -70,13 +74,14 @@ def uniform(n: int) -> Mixture:
     return Mixture([], -n * math.log(2 * math.pi))
 
 
-def fit(angles_deg: Angles, count: int) -> Mixture:
+def fit(angles_deg: Angles, count: int, *, least: float = -math.inf) -> Mixture:
     """Maximum-likelihood mixture of `count` von Mises distributions (1 to 3), by EM with exact kappa.
 
     Deterministic and turning with the sample: the circle is cut at its widest gap and the starts are
-    the pairs or triples of six quantiles; each runs 10 steps, the best two to the end. Kappa is capped
-    at 500, where a component sits on tied readings. Above 1,440 different values the readings are
-    put in classes of 0.25 deg. Source: Banerjee et al. 2005, J. Mach. Learn. Res. 6, 1345-1382.
+    the pairs or triples of six quantiles; each runs 10 steps, the best two go on to 500 at most. A
+    fit that after 10 steps is more than 3 below the log-likelihood `least`, or after 50 more than 1,
+    is left there. Kappa is capped at 500, where a component sits on tied readings. Above 1,440
+    different values the readings are put in classes of 0.25 deg. Source: Banerjee et al. 2005, J. Mach. Learn. Res. 6, 1345-1382.
     """
     if count == 1:
         return _single(angles_deg)
@@ -84,15 +89,21 @@ def fit(angles_deg: Angles, count: int) -> Mixture:
     cut = _after_widest_gap(x)
     order = np.concatenate([np.arange(cut, len(x)), np.arange(cut)])
     share = (np.cumsum(weight[order]) - 0.5 * weight[order]) / weight.sum()
-    quantiles = [x[order][np.searchsorted(share, (2 * i + 1) / 12).clip(0, len(x) - 1)] for i in range(6)]
+    places = [np.searchsorted(share, (2 * i + 1) / 12).clip(0, len(x) - 1) for i in range(6)]
+    quantiles = np.deg2rad(x[order][places])
+    starts = np.array(list(combinations(quantiles, count)))
+    state = np.array([starts, np.full_like(starts, 4.0), np.full_like(starts, 1 / count)])
     theta = np.deg2rad(x)
-    starts = [_start(np.deg2rad(np.array(chosen))) for chosen in combinations(quantiles, count)]
-    tried = [_run(theta, weight, start, 10) for start in starts]
-    ranked = sorted(range(len(tried)), key=lambda i: (-round(tried[i][1], 6), i))[:2]
-    ended = [_run(theta, weight, tried[i][0], 1000) for i in ranked]
-    state, log_likelihood = max(ended, key=lambda end: end[1])
-    modes = [Mode(direction_deg(math.cos(mu), math.sin(mu)), kappa, w) for mu, kappa, w in state.T.tolist()]
-    return Mixture(sorted(modes, key=lambda m: -m.weight), log_likelihood)
+    state, log_likelihood = _run(theta, weight, state, 10, SETTLED[0])
+    ranked = sorted(range(len(starts)), key=lambda i: (-math.floor(log_likelihood[i] * 1e6 + 0.5), i))[:2]
+    runs = [(state[:, i : i + 1], log_likelihood[i : i + 1]) for i in ranked]
+    for steps, hope, settled in ((40, 3.0, SETTLED[0]), (450, 1.0, SETTLED[1])):
+        if max(float(reached[0]) for _, reached in runs) + hope < least:
+            break
+        runs = [_run(theta, weight, held, steps, settled) for held, _ in runs]
+    best, reached = max(runs, key=lambda end: float(end[1][0]))
+    modes = [Mode(direction_deg(math.cos(mu), math.sin(mu)), kappa, w) for mu, kappa, w in best[:, 0].T.tolist()]
+    return Mixture(sorted(modes, key=lambda m: -m.weight), float(reached[0]))
 
 
 def _single(angles_deg: Angles) -> Mixture:
@@ -120,34 +131,33 @@ def _after_widest_gap(x: Array) -> int:
     return int(np.argmax(gaps >= gaps.max() - 1e-9))
 
 
-def _start(means: Array) -> Array:
-    m = len(means)
-    return np.array([means, np.full(m, 4.0), np.full(m, 1 / m)])
+def _run(theta: Array, weight: Array, state: Array, steps: int, settled: float) -> tuple[Array, Array]:
+    """EM from several states at once until none moves `settled`; their log-likelihoods.
 
-
-def _run(theta: Array, weight: Array, state: Array, steps: int) -> tuple[Array, float]:
-    """EM from a state (rows: mean, kappa, weight) until it moves less than 1e-11."""
-    total = weight.sum()
+    `state`: shape (3, starts, modes), rows mean, kappa, weight.
+    """
+    cosines, sines = weight * np.cos(theta), weight * np.sin(theta)
     for _ in range(steps):
         density = _densities(theta, state)
-        share = density / density.sum(axis=1, keepdims=True) * weight[:, None]
-        held = share.sum(axis=0)
-        c = (share * np.cos(theta)[:, None]).sum(axis=0)
-        s = (share * np.sin(theta)[:, None]).sum(axis=0)
+        share = density / density.sum(axis=2, keepdims=True)
+        c, s = np.tensordot(cosines, share, 1), np.tensordot(sines, share, 1)
+        held = np.tensordot(weight, share, 1)
         lengths = np.minimum(np.hypot(c, s) / np.maximum(held, 1e-300), 1.0)
-        kappas = [kappa_of(r) for r in lengths.tolist()]
-        capped = [LARGEST_KAPPA if k is None else min(k, LARGEST_KAPPA) for k in kappas]
-        following = np.array([np.arctan2(s, c), capped, held / total])
-        moved = np.abs(following - state).max()
+        following = np.array([np.arctan2(s, c), kappas_of(lengths, LARGEST_KAPPA), held / weight.sum()])
+        change = np.abs(following - state)
+        change[1] /= np.maximum(1.0, following[1])
+        moved = change.max()
         state = following
-        if moved < 1e-11:
+        if moved < settled:
             break
-    return state, float((weight * np.log(_densities(theta, state).sum(axis=1))).sum())
+    return state, np.tensordot(weight, np.log(_densities(theta, state).sum(axis=2)), 1)
 
 
 def _densities(theta: Array, state: Array) -> Array:
+    """Shape (readings, starts, modes)."""
     mu, kappa, w = state
-    return np.asarray(w * np.exp(kappa * (np.cos(theta[:, None] - mu) - 1)) / (2 * math.pi * special.i0e(kappa)))
+    deviation = np.cos(theta[:, None, None] - mu) - 1
+    return np.asarray(w / (2 * math.pi * special.i0e(kappa)) * np.exp(kappa * deviation))
 
 
 def _distinct(modes: list[Mode], n: int) -> bool:

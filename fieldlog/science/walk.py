@@ -47,11 +47,11 @@ def longer_than(r: float, n: int) -> float:
         nodes, weights = _pair_lengths(4 * r)
         p = _three(4 * r, nodes, weights)
     elif n <= LARGEST_EXACT:
-        zeros, factors = _series(n)
+        zeros, factors = series(n)
         p = 1 - r * float(np.sum(factors * special.j1(zeros * r)))
     else:
         p = math.exp(math.sqrt(1 + 4 * n + 4 * n * n * (1 - r * r)) - (1 + 2 * n))
-    if n > 4 and p < (1e-6 if n < 8 else 1e-8):
+    if n > 4 and p < floor_of_series(n):
         p = _saddle(r, n)
     return min(max(p, SMALLEST), 1.0)
 
@@ -128,9 +128,14 @@ def further_than(v: float, n: int) -> float:
         u = v * math.sqrt(2 / n)
         density = math.exp(-u * u / 2) / math.sqrt(2 * math.pi)
         p = 0.5 * math.erfc(u / math.sqrt(2)) - density * (1.5 / (24 * n)) * (u**3 - 3 * u)
-    if n > 2 and p < (1e-6 if n < 8 else 1e-8):
+    if n > 2 and p < floor_of_series(n):
         p = _lugannani_rice(v, n)
     return min(max(p, SMALLEST), 1.0)
+
+
+def floor_of_series(n: int) -> float:
+    """Below this a p value comes from a saddle point, because the series has lost its digits."""
+    return 1e-6 if n < 8 else 1e-8
 
 
 def _terms(n: int) -> int:
@@ -140,7 +145,8 @@ def _terms(n: int) -> int:
 
 
 @lru_cache(maxsize=64)
-def _series(n: int) -> tuple[Array, Array]:
+def series(n: int) -> tuple[Array, Array]:
+    """Zeros j_k of J0 and factors f_k: P(R >= r) = 1 - r sum f_k J1(j_k r), for 5 <= n <= 1000."""
     zeros = _zeros_of_j0(_terms(n))
     return zeros, 2 * special.j0(zeros / n) ** n / (zeros * special.j1(zeros) ** 2)
 

@@ -64,8 +64,9 @@ def made_samples() -> list[tuple[str, list[float], Options]]:
     crossed = [a / 2 for a in towards(40, 20, 7) + towards(220, 20, 7)]
     made.append(("crests square to each other", crossed, {"axial": True, "subject": "Crests"}))
     for step in (1, 2, 5, 10, 30, 45, 7):
-        for n in (12, 40):
-            made.append((f"in {step} deg classes, n = {n}", on_step(towards(100, 2, n), step), {"step_deg": step}))
+        made.extend(
+            (f"in {step} deg classes, n = {n}", on_step(towards(100, 2, n), step), {"step_deg": step}) for n in (12, 40)
+        )
     turned = [v + 13.7 for v in on_step(towards(100, 2, 25), 5)]
     made.append(("classes turned by declination", turned, {"step_deg": 5, "axial": True}))
     for dunes, each in ((2, 4), (4, 5), (5, 3), (6, 5), (8, 5), (12, 1), (25, 2)):

@@ -19,6 +19,7 @@ const MOST_PLACES = 1440;
 const LARGEST_KAPPA = 500;
 const SMALLEST_KAPPA = 1;
 const LEAST_APART_DEG = 30;
+const SETTLED = [1e-9, 1e-12];
 
 /**
  * @param {Angles} anglesDeg
@@ -31,7 +32,9 @@ export function findModes(anglesDeg) {
   let best = {modes: [], logLikelihood: -n * Math.log(2 * Math.PI)};
   let lowest = bic(best, n);
   for (const count of [1, 2, 3]) {
-    const found = fit(anglesDeg, count);
+    // The log-likelihood that this many modes must have to be chosen.
+    const least = ((3 * count - 1) * Math.log(n) - lowest) / 2;
+    const found = fit(anglesDeg, count, least);
     if ((count === 1 || distinct(found.modes, n)) && bic(found, n) < lowest) {
       best = found;
       lowest = bic(found, n);
@@ -52,9 +55,10 @@ export function bic(mixture, n) {
 /**
  * @param {Angles} anglesDeg
  * @param {number} count 1 to 3
+ * @param {number} [least] a fit that 10 steps leave more than 3 below this, or 50 more than 1, is left there
  * @returns {Mixture}
  */
-export function fit(anglesDeg, count) {
+export function fit(anglesDeg, count, least = -Infinity) {
   if (count === 1) return single(anglesDeg);
   const {x, weight} = places(anglesDeg);
   const theta = x.map(radians);
@@ -62,13 +66,18 @@ export function fit(anglesDeg, count) {
   const ranked = choices(quantiles, count)
     .map((means, i) => {
       const start = means.map((mu) => ({mu, kappa: 4, weight: 1 / count}));
-      const tried = run(theta, weight, start, 10);
-      return {...tried, i, rank: Math.round(tried.logLikelihood * 1e6)};
+      const tried = run(theta, weight, start, 10, SETTLED[0]);
+      return {...tried, i, rank: Math.floor(tried.logLikelihood * 1e6 + 0.5)};
     })
     .sort((a, b) => b.rank - a.rank || a.i - b.i)
     .slice(0, 2);
-  const ended = ranked.map((tried) => run(theta, weight, tried.state, 1000));
-  const best = ended.length > 1 && ended[1].logLikelihood > ended[0].logLikelihood ? ended[1] : ended[0];
+  /** @type {{state: State, logLikelihood: number}[]} */
+  let runs = ranked;
+  for (const [steps, hope, settled] of [[40, 3, SETTLED[0]], [450, 1, SETTLED[1]]]) {
+    if (Math.max(...runs.map((tried) => tried.logLikelihood)) + hope < least) break;
+    runs = runs.map((tried) => run(theta, weight, tried.state, steps, settled));
+  }
+  const best = runs[1].logLikelihood > runs[0].logLikelihood ? runs[1] : runs[0];
   const modes = best.state.map((part) => ({
     direction_deg: directionDeg(Math.cos(part.mu), Math.sin(part.mu)), kappa: part.kappa, weight: part.weight,
   }));
@@ -155,14 +164,15 @@ function choices(values, count) {
 }
 
 /**
- * EM from a state until it moves less than 1e-11.
+ * EM from a state until it moves less than `settled`.
  * @param {number[]} theta
  * @param {number[]} weight
  * @param {State} start
  * @param {number} steps
+ * @param {number} settled
  * @returns {{state: State, logLikelihood: number}}
  */
-function run(theta, weight, start, steps) {
+function run(theta, weight, start, steps, settled) {
   let state = start;
   const total = weight.reduce((sum, w) => sum + w, 0);
   const cosines = theta.map(Math.cos);
@@ -189,12 +199,12 @@ function run(theta, weight, start, steps) {
     let moved = 0;
     following.forEach((part, j) => {
       moved = Math.max(
-        moved, Math.abs(part.mu - before[j].mu), Math.abs(part.kappa - before[j].kappa),
+        moved, Math.abs(part.mu - before[j].mu), Math.abs(part.kappa - before[j].kappa) / Math.max(1, part.kappa),
         Math.abs(part.weight - before[j].weight),
       );
     });
     state = following;
-    if (moved < 1e-11) break;
+    if (moved < settled) break;
   }
   const scales = state.map(scaleOf);
   let logLikelihood = 0;
