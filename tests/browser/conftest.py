@@ -106,6 +106,17 @@ class Phone:
         assert self.context is not None
         self.context.set_geolocation({"latitude": lat_deg, "longitude": lon_deg, "accuracy": accuracy_m})
 
+    def signal(self, *, on: bool) -> None:
+        """Walk out of reach of any network, or back into it."""
+        assert self.context is not None
+        self.context.set_offline(not on)
+
+    @property
+    def page(self) -> Page:
+        """The page that was opened last."""
+        assert self.context is not None
+        return self.context.pages[-1]
+
     def kill(self) -> None:
         """End the browser's processes at once, as a flat battery does."""
         needle = f"--user-data-dir={self.folder}\0"

@@ -218,7 +218,7 @@ def test_every_asked_field_stands_in_the_form_and_optional_ones_only_when_on(
                 block.locator("button.line").click()
             for part in block.locator(".body [aria-label]").all():
                 found.add(part.get_attribute("aria-label"))
-            found |= {label for label in block.locator(".name").all_inner_texts()}
+            found |= set(block.locator(".name").all_inner_texts())
         return found
 
     asked = [f for f in OBSERVATION.fields if f.asked and not f.is_derived and not f.retired]

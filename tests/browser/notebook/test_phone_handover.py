@@ -370,6 +370,26 @@ def test_a_missing_number_stops_and_is_reported(joined: NotebookPage, store: Sto
     assert len(joined.run("() => book.sites()")) == 3
 
 
+def test_an_entry_that_base_changed_stops_and_what_is_here_stays(joined: NotebookPage, store: StoreOfOneSurvey) -> None:
+    joined.run(
+        """async () => {
+            await book.connection.transact(['meta'], 'readwrite', (t) => { t.objectStore('meta').put(0, 'cursor'); });
+            book.kept.cursor = 0;
+            const plain = deps.fetch;
+            deps.fetch = async (url, init) => {
+                const answer = await plain(url, init);
+                if (!url.includes('/changes')) return answer;
+                const text = (await answer.text()).replace('North dune', 'Other dune');
+                return new Response(text, {headers: {'Content-Type': 'application/json'}});
+            };
+        }"""
+    )
+    state = joined.hand_over()
+    assert state["phase"] == "stopped"
+    assert "changed an entry" in state["message"]
+    assert [site["name"] for site in joined.run("() => book.sites()")] == ["North dune"]
+
+
 def test_a_notebook_on_two_phones_stops_and_goes_on_under_a_new_id(
     joined: NotebookPage, twin: Callable[[], Profile], line: Line, store: StoreOfOneSurvey
 ) -> None:
