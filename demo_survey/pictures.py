@@ -46,7 +46,7 @@ def _drawing(name: str) -> NDArray[np.float64]:
         _stones(draw, random)
     else:
         _sky(draw)
-        {"tamrel": _ridge, "belq": _star, "turnback": _cap, "lomar": _line}[name.split("-")[0]](draw)
+        {"tamrel": _ridge, "belq": _star, "turnback": _cap, "lomar": _line}[name.split("-", maxsplit=1)[0]](draw)
     grain = random.normal(0, 9, (HEIGHT, WIDTH, 1)) + random.normal(0, 3, (HEIGHT, WIDTH, 3))
     grain[: HEIGHT // 4] *= 0.4
     return np.clip(np.asarray(image, dtype=float) + grain, 0, 255)

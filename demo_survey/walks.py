@@ -63,10 +63,9 @@ def track_gpx(name: str, segments: Sequence[Sequence[Point]]) -> str:
 
 def waypoints_gpx(sites: Sequence[dict[str, object]]) -> str:
     """The sites as waypoints: name, and what stands there as the description."""
-    lines = [HEAD]
-    for site in sites:
-        lines.append(
-            f'  <wpt lat="{site["lat_deg"]}" lon="{site["lon_deg"]}"><name>{escape(str(site["name"]))}</name>'
-            f'<desc>{escape(str(site["dune_pattern"]))}</desc></wpt>\n'
-        )
-    return "".join([*lines, "</gpx>\n"])
+    lines = (
+        f'  <wpt lat="{site["lat_deg"]}" lon="{site["lon_deg"]}"><name>{escape(str(site["name"]))}</name>'
+        f'<desc>{escape(str(site["dune_pattern"]))}</desc></wpt>\n'
+        for site in sites
+    )
+    return "".join([HEAD, *lines, "</gpx>\n"])

@@ -131,7 +131,9 @@ def test_the_stony_site_answers_none_here() -> None:
         assert row["bedform"] is None
         assert row["slip_face_read_deg"] is None
         assert row[absent_column("slip_face_read_deg")] == "none_here"
-        assert row["surface_type"] and row["stone_cover_percent"] and row["landform"]
+        assert row["surface_type"]
+        assert row["stone_cover_percent"]
+        assert row["landform"]
 
 
 @pytest.mark.parametrize(
@@ -200,7 +202,8 @@ def test_hardly_any_other_reading_draws_a_question() -> None:
 def test_the_walks_are_gpx_and_cover_the_readings_without_a_fix() -> None:
     walked = gpxpy.parse((FOLDER / "tracks" / "tome-8-july.gpx").read_text(encoding="utf-8"))
     bounds = walked.get_time_bounds()
-    assert bounds.start_time and bounds.end_time
+    assert bounds.start_time
+    assert bounds.end_time
     unplaced = [row for row in rows("lomar") if row["lat_deg"] is None]
     assert len(unplaced) == 2
     for row in unplaced:
