@@ -16,7 +16,7 @@ ACCENT: Final = "#8e3516"
 RIM: Final = 0.34
 MEAN_DEG: Final = 214.0
 READINGS_DEG: Final = (186.0, 199.0, 207.0, 214.0, 221.0, 229.0, 243.0)
-PNG_SIZES: Final = {"icon-180.png": 180, "icon-192.png": 192, "icon-512.png": 512}
+PNG_SIZES: Final = {"icon-192.png": 192, "icon-512.png": 512}
 
 Point = tuple[float, float]
 
@@ -85,7 +85,7 @@ def write_png(path: Path, size: int) -> None:
     draw.line((*px((0.5, 0.5)), *px(_at(MEAN_DEG, 0.15))), fill=ACCENT, width=round(0.04 * big))
     draw.polygon([px(point) for point in _arrow_head()], fill=ACCENT)
     small = image.resize((size, size), Image.Resampling.LANCZOS)
-    small.quantize(24).save(path, optimize=True)
+    small.quantize(8, dither=Image.Dither.NONE).save(path, optimize=True)
 
 
 def main() -> None:
