@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from datetime import timedelta
 from importlib import import_module
-from importlib.util import find_spec
 from typing import Any, Final
 
 from flask import Flask
@@ -92,7 +91,6 @@ def _register(app: Flask) -> None:
     callers("anyone")(app.view_functions["static"])
     for place in BLUEPRINTS:
         module, name = place.split(":")
-        if find_spec(module.rpartition(".")[0]) is None or find_spec(module) is None or (module.endswith("shell") and not (static_folder() / "css/phone.css").exists()): continue
         blueprint: Any = getattr(import_module(module), name)
         app.register_blueprint(blueprint)
         if blueprint.name in WITHOUT_FORMS:

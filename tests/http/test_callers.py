@@ -56,6 +56,7 @@ TABLE: dict[str, tuple[Any, ...]] = {
     "exports.page": LEAD,
     "exports.file": LEAD,
     "imports.page": LEAD,
+    "imports.take": LEAD,
     "imports.preview": LEAD,
     "imports.confirm": LEAD,
     "pages.start": LEAD,
