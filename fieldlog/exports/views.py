@@ -7,7 +7,7 @@ import tempfile
 from pathlib import Path
 from typing import Any
 
-from flask import Blueprint, Response, render_template, request, send_file
+from flask import Blueprint, render_template, send_file
 
 from fieldlog.exports import service
 from fieldlog.exports.layers import LAYERS
@@ -33,9 +33,6 @@ def page(survey: str) -> str:
 def file(survey: str, name: str) -> Any:
     """The survey as a file, in the format of the name's ending."""
     chosen = service.format_of(name)
-    if request.method == "HEAD":
-        # The body of such an answer is never closed, which would leave the folder behind.
-        return Response(mimetype=chosen.media_type)
     folder = tempfile.TemporaryDirectory(prefix="ergbook-")
     try:
         target = Path(folder.name) / f"survey{chosen.ending}"
