@@ -43,6 +43,8 @@ def file(survey: str, name: str) -> Any:
     except BaseException:
         folder.cleanup()
         raise
+    # What is passed through as it is closes its file only, and never calls what waits for its end.
+    answer.direct_passthrough = False
     answer.call_on_close(folder.cleanup)
     return answer
 
