@@ -100,6 +100,7 @@ class Server:
 
     data_dir: Path
     port: int = field(default_factory=free_port)
+    root: Path = ROOT
     command: tuple[str, ...] = ("serve",)
     process: subprocess.Popen[str] | None = None
 
@@ -116,7 +117,7 @@ class Server:
                 stdout=shown,
                 stderr=subprocess.STDOUT,
                 text=True,
-                cwd=ROOT,
+                cwd=self.root,
             )
         deadline = time.monotonic() + 60
         while time.monotonic() < deadline:

@@ -2,19 +2,22 @@
 
 from __future__ import annotations
 
+import tempfile
+from pathlib import Path
+
 import click
 
 
 @click.command()
 @click.argument("message")
 def migration(message: str) -> None:
-    """Write a migration for what the sheets and models have and the database has not.
+    """Write a migration for what the sheets and models have and a database of all migrations has not.
 
-    Read it before you commit it. MESSAGE says what it adds.
+    Read it before you commit it. MESSAGE says what it adds. Your own store is left alone.
     """
     from fieldlog.store.migrate import upgrade, write_migration
-    from fieldlog.web.settings import Settings
 
-    url = Settings.from_environment().database_url
-    upgrade(url)
-    write_migration(url, message)
+    with tempfile.TemporaryDirectory(prefix="ergbook-") as folder:
+        url = f"sqlite:///{Path(folder) / 'empty.sqlite'}"
+        upgrade(url)
+        write_migration(url, message)

@@ -5,6 +5,7 @@ from __future__ import annotations
 import json
 import sqlite3
 from collections.abc import Callable
+from datetime import UTC, datetime
 from pathlib import Path
 from typing import Any
 
@@ -16,7 +17,6 @@ from playwright.sync_api import Page, expect
 
 from fieldlog.science.magnetic import declination
 from fieldlog.science.summary import summarise
-from fieldlog.sheet.times import read_time
 from tests.browser import walk
 from tests.browser.conftest import Phone
 from tests.conftest import Server
@@ -84,7 +84,7 @@ def finding_on_screen(page: Page, measure: str) -> str:
 
 def expected_finding(readings: list[tuple[int, int]], *, axial: bool) -> str:
     """What Python says of the numbers as read: the declination of the site is added to each."""
-    turn = declination(-19.9462, 66.0318, 0, read_time("2026-12-01T00:00:00Z")).declination_deg
+    turn = declination(-19.9462, 66.0318, 0, datetime.now(UTC)).declination_deg
     numbers = [crest if axial else slip_face for crest, slip_face in readings]
     dunes = [i // 2 for i in range(10)]
     kept = [i for i in range(10) if i != 7]
@@ -218,7 +218,7 @@ def check_layer(desk: Page, address: str, survey: str, folder: Path) -> None:
     meta, _, geometry, columns = pyogrio.raw.read(file, layer="observations")
     table: dict[str, Any] = dict(zip(meta["fields"], columns, strict=True))
     assert len(geometry) == 20
-    turn = declination(-19.9462, 66.0318, 0, read_time("2026-12-01T00:00:00Z")).declination_deg
+    turn = declination(-19.9462, 66.0318, 0, datetime.now(UTC)).declination_deg
     for as_read, true, limit in (("crest_read_deg", "crest_deg", 180), ("slip_face_read_deg", "slip_face_deg", 360)):
         expected = (table[as_read] + table["declination_deg"]) % limit
         np.testing.assert_allclose(table[true], expected, atol=0.0051)
