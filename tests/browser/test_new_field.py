@@ -107,7 +107,7 @@ def fill_in(page: Page, field: MadeUp) -> None:
     if opens.get_attribute("aria-expanded") == "false":
         opens.click()
     if field.type == "choice":
-        walk.say(page, field.label, field.typed)
+        page.get_by_role("group", name=field.label, exact=True).locator(f"[data-value={field.value}]").click()
     elif field.type == "flag":
         page.get_by_role("checkbox", name=field.label).check()
     else:
