@@ -89,6 +89,7 @@ def write_png(path: Path, size: int) -> None:
 
 
 def main() -> None:
+    """Write the icons of the phone app anew."""
     folder = Path(__file__).resolve().parents[2] / "static" / "icons"
     folder.mkdir(exist_ok=True)
     (folder / "icon.svg").write_text(svg(), encoding="utf-8")

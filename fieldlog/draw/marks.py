@@ -30,19 +30,23 @@ def at(middle: float, bearing_deg: float, radius: float, aside: float = 0.0) -> 
 
 
 def circle(role: str, centre: Point, radius: float) -> Shape:
+    """A circle."""
     return {"kind": "circle", "role": role, "cx": centre[0], "cy": centre[1], "r": radius}
 
 
 def spoke(role: str, middle: float, bearing_deg: float, inner: float, outer: float) -> Shape:
+    """A line along a bearing, from one distance from the middle to another."""
     (x1, y1), (x2, y2) = at(middle, bearing_deg, inner), at(middle, bearing_deg, outer)
     return {"kind": "line", "role": role, "x1": x1, "y1": y1, "x2": x2, "y2": y2}
 
 
 def lettering(role: str, point: Point, size: float, text: str) -> Shape:
+    """Text centred on a point."""
     return {"kind": "text", "role": role, "x": point[0], "y": point[1], "size": size, "text": text}
 
 
 def polygon(role: str, points: Sequence[Point]) -> Shape:
+    """A closed path through the points."""
     commands: list[list[Any]] = [["L", x, y] for x, y in points]
     commands[0][0] = "M"
     return {"kind": "path", "role": role, "commands": [*commands, ["Z"]]}
@@ -91,6 +95,7 @@ def bar(role: str, middle: float, bearing_deg: float, length: float, rim: float)
 
 
 def cross(role: str, centre: Point, reach: float) -> Shape:
+    """A small cross, as what is crossed out is drawn."""
     x, y = centre
     commands = [["M", x - reach, y - reach], ["L", x + reach, y + reach],
                 ["M", x - reach, y + reach], ["L", x + reach, y - reach]]

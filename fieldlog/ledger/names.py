@@ -38,6 +38,7 @@ def new_survey_id() -> str:
 
 
 def is_device(text: str) -> bool:
+    """Whether this can be a device's id."""
     return NAME.fullmatch(f"{text}-1") is not None
 
 

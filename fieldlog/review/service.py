@@ -207,6 +207,7 @@ def site_sheet(session: AnySession, survey: str, record: str) -> SiteSheet:
 
 
 def photos_of(session: AnySession, survey: str, records: set[str]) -> dict[str, list[Row]]:
+    """Observation -> its standing photos in the order in which they were made."""
     found: dict[str, list[Row]] = defaultdict(list)
     rows = session.execute(
         select(photos).where(photos.c.survey == survey, photos.c.crossed_out.is_(None)).order_by(photos.c.made_at)

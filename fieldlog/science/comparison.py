@@ -46,6 +46,8 @@ class Pair:
 
 @dataclass(frozen=True)
 class Compared:
+    """What `ergbook compare` says; `pairs` is empty for two samples."""
+
     samples: list[Described]
     tests: list[compare.Comparison]
     pairs: list[Pair]

@@ -31,6 +31,8 @@ Array = NDArray[np.float64]
 
 @dataclass(frozen=True)
 class Mode:
+    """One von Mises component: where it points, its concentration, its share of the readings."""
+
     direction_deg: float
     kappa: float
     weight: float

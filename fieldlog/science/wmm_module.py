@@ -31,6 +31,7 @@ def module_text() -> str:
 
 
 def main(argv: list[str]) -> int:
+    """Write the module, or with --check say whether it is fresh (exit code 0) or stale (1)."""
     path = Path(__file__).resolve().parents[2] / "static" / "js" / "science" / "wmm.js"
     text = module_text()
     if path.exists() and path.read_text(encoding="utf-8") == text:

@@ -130,6 +130,7 @@ export const CONSTANTS: {
 
 
 def main(argv: list[str]) -> int:
+    """Write the modules, or with --check say whether they are fresh (exit code 0) or stale (1)."""
     folder = Path(__file__).resolve().parents[2] / "static" / "js" / "sheet"
     stale = []
     for path, text in ((folder / "declared.js", module_text()), (folder / "declared.d.ts", types_text())):

@@ -30,6 +30,8 @@ NAMING = {
 
 
 class Base(DeclarativeBase):
+    """What every mapped class stands on; its metadata names all constraints."""
+
     metadata = MetaData(naming_convention=NAMING)
 
 
