@@ -4,11 +4,11 @@ from __future__ import annotations
 
 import json
 import math
-import subprocess
-import sys
 from pathlib import Path
 
 import pytest
+
+from tests.cli.ergbook import ergbook
 
 LEANS = "45 55 81 96 110 117 132 154\n"
 KEYS = [
@@ -18,13 +18,6 @@ KEYS = [
     "rao_u_deg", "rao_p", "modes", "readings_needed", "bedforms", "between_bedform_sd_deg",
     "within_bedform_sd_deg", "bedforms_needed", "outcome", "finding", "notes",
 ]  # fmt: skip
-
-
-def ergbook(*arguments: str, given: str = "") -> subprocess.CompletedProcess[str]:
-    return subprocess.run(
-        [sys.executable, "-m", "fieldlog.cli.main", *arguments],
-        input=given, capture_output=True, text=True, encoding="utf-8", timeout=60, check=False,
-    )  # fmt: skip
 
 
 def stats_json(*arguments: str, given: str) -> dict:
