@@ -16,7 +16,7 @@ from fieldlog.imports.gpx import read_gpx
 from fieldlog.imports.placing import Placement, place
 from fieldlog.imports.sites_csv import read_sites
 from fieldlog.sheet.schema import problems
-from fieldlog.sheet.subjects import SITE
+from fieldlog.sheet.subjects import label_in
 from fieldlog.sheet.times import read_time
 from fieldlog.store.append import say
 from fieldlog.store.db import AnySession
@@ -138,7 +138,7 @@ def _plan_sites(plan: Plan, found: Found, held: Iterable[Mapping[str, Any]]) -> 
         wrong = problems("site", values, creates=True)
         there = by_name.get(values.get("name"))
         if wrong:
-            said = "; ".join(f"{_label(name)} {what}" for name, what in wrong.items())
+            said = "; ".join(f"{label_in('site', name)} {what}" for name, what in wrong.items())
             plan.refused.append(RefusedRow(where, said))
         elif there is not None and _same_place(there, values):
             plan.already.append(f"site {values['name']}")
@@ -149,11 +149,6 @@ def _plan_sites(plan: Plan, found: Found, held: Iterable[Mapping[str, Any]]) -> 
         else:
             fresh.add(values["name"])
             plan.sites.append(values)
-
-
-def _label(name: str) -> str:
-    known = SITE.by_name.get(name)
-    return known.label if known else name
 
 
 def _same_place(held: Mapping[str, Any], values: Values) -> bool:

@@ -20,7 +20,7 @@ from fieldlog.sheet.times import read_time
 from fieldlog.store.append import ForeignStoreError
 from fieldlog.store.db import AnySession
 from fieldlog.store.projection import numbered_entries_of
-from fieldlog.store.tables import LedgerEntry, TwoVersions, observations, photos
+from fieldlog.store.tables import LedgerEntry, SurveyCounter, TwoVersions, observations, photos
 from fieldlog.surveys.service import Row, crew_names, site_row, sites_of, survey_row
 
 
@@ -80,11 +80,15 @@ class SiteSheet:
 
 @dataclass(frozen=True)
 class Change:
-    """One entry of a record's history: who, when, and each field from what to what."""
+    """One entry of a record's history: who, when, and each field from what to what.
+
+    `at_base`: it was said at a desk, not on a phone.
+    """
 
     seq: int
     who: str
     device: str
+    at_base: bool
     made_at: datetime
     received_at: datetime
     fields: list[tuple[str, Any, Any]] = field(default_factory=list)
@@ -232,11 +236,15 @@ def history(session: AnySession, survey: str, record: str) -> list[Change]:
         ).all()
     )
     by_name = {entry.name: entry for _, entry in numbered}
+    desk = session.scalar(select(SurveyCounter.store_device).where(SurveyCounter.survey == survey))
     changes = []
     for seq, entry in numbered:
         fields = [(name, _before(entry, name, by_name), value) for name, value in entry.values.items()]
         by = entry.body["by"]
-        changes.append(Change(seq, names.get(by, by), entry.device, read_time(entry.body["made_at"]), received[seq], fields))
+        changes.append(Change(
+            seq=seq, who=names.get(by, by), device=entry.device, at_base=entry.device == desk,
+            made_at=read_time(entry.body["made_at"]), received_at=received[seq], fields=fields,
+        ))
     return changes
 
 

@@ -109,3 +109,9 @@ SHEETS: Final = {sheet.kind: sheet for sheet in (SURVEY, CREW, SITE, OBSERVATION
 
 PHONE_KINDS: Final = frozenset({"observation", "photo", "track"})
 """What a phone may say; the rest is the lead's."""
+
+
+def label_in(kind: str, name: str) -> str:
+    """A field's label; its name where the sheet does not know it."""
+    field = SHEETS[kind].by_name.get(name)
+    return field.label if field else name

@@ -27,7 +27,7 @@ from fieldlog.ledger.entry import (
 )
 from fieldlog.ledger.merge import merge
 from fieldlog.sheet.schema import problems
-from fieldlog.sheet.subjects import PHONE_KINDS
+from fieldlog.sheet.subjects import PHONE_KINDS, label_in
 from fieldlog.store.db import AnySession
 from fieldlog.store.projection import entries_of, project_records
 from fieldlog.store.tables import DeviceCounter, LedgerEntry, SetAside, SurveyCounter
@@ -259,7 +259,7 @@ def say(
 
     Inside `write()`. `by` is the crew record of whoever says it; None only for a crew member who
     introduces themselves. With `record`, only `values` that differ from what stands are said, over
-    all their heads. Refusal names the field that is wrong.
+    all their heads. Refusal names the field that is wrong by its label.
     """
     counter = lock_survey(session, survey)
     now = now or datetime.now(UTC)
@@ -285,7 +285,7 @@ def say(
     wrong = problems(kind, said, creates=record is None)
     if wrong:
         field, what = next(iter(wrong.items()))
-        raise Refusal(what, field)
+        raise Refusal(what, label_in(kind, field))
     counter.hlc = clock.tick(counter.hlc, int(now.timestamp() * 1000))
     text = write_text(
         app=__version__, by=by or names.entry_name(device, n), survey=survey, kind=kind, values=said,
