@@ -17,6 +17,7 @@ import gpxpy
 from gpxpy.gpx import GPX, GPXTrack, GPXTrackPoint, GPXWaypoint
 
 from fieldlog.imports.found import Found, FoundTrack, ImportFileError, RefusedRow
+from fieldlog.science.finding import counted
 from fieldlog.sheet.times import wire_time
 
 BYTES_MAX: Final = 16 * 1024 * 1024
@@ -49,11 +50,11 @@ def read_gpx(data: bytes) -> Found:
         _waypoint(found, number, waypoint)
     skipped = sum((w.type or "").strip().lower() in NOT_SITES for w in gpx.waypoints)
     if skipped:
-        found.notes.append(f"{skipped} waypoints are observations of an exported survey: they are no sites.")
+        found.notes.append(f"Left out: {counted(skipped, 'waypoint')} of an exported survey's observations, which are no sites.")
     for number, track in enumerate(gpx.tracks, start=1):
         _track(found, number, track)
     if gpx.routes:
-        found.notes.append(f"{len(gpx.routes)} routes are left out: a route is a plan, not where anybody went.")
+        found.notes.append(f"Left out: {counted(len(gpx.routes), 'route')}. A route is a plan, not where anybody went.")
     if not (gpx.waypoints or any(track.segments for track in gpx.tracks)):
         raise ImportFileError("there are no waypoints and no tracks in it", "GPX", "Choose another file")
     return found
@@ -121,7 +122,7 @@ def _track(found: Found, number: int, track: GPXTrack) -> None:
             bad = next(p for p in segment.points if not possible(p.latitude, p.longitude))
             count = len(segment.points) - len(good)
             found.refused.append(
-                RefusedRow(f"track {own_name}", f"{count} points left out: {impossible(bad.latitude, bad.longitude)}")
+                RefusedRow(f"track {own_name}", f"left out {counted(count, 'point')}: {impossible(bad.latitude, bad.longitude)}")
             )
         if not good:
             continue
@@ -129,7 +130,7 @@ def _track(found: Found, number: int, track: GPXTrack) -> None:
         untimed = sum(point[3] is None for point in points)
         if untimed:
             found.notes.append(
-                f"Track {own_name}: {untimed} of {len(points)} points have no time that can be read; "
+                f"Track {own_name}: no time that can be read in {untimed} of {counted(len(points), 'point')}; "
                 "nothing can be placed by them."
             )
         found.tracks.append(FoundTrack(own_name, points))

@@ -165,14 +165,14 @@ def _first(found: list[Result]) -> Result | None:
 
 
 def _worst_first(line: SiteLine) -> tuple[int, float, str]:
-    """Two versions, then questions, then no result, then the most dunes still needed; enough comes last."""
+    """Two versions, then questions, then not read yet, then the most dunes still needed; last what wants nothing."""
     main = line.so_far.get("slip_face_deg") or line.so_far.get("crest_deg")
     if line.two_versions:
         rank = 0
     elif line.questions:
         rank = 1
     elif main is None:
-        rank = 2
+        rank = 4 if line.readings else 2
     else:
         rank = 4 if main.summary.enough else 3
     needed = more_needed(main) if main else None

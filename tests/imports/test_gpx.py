@@ -60,7 +60,7 @@ def test_encodings_by_mark_or_declaration(encoding: str) -> None:
 def test_points_without_a_time_are_kept_and_counted() -> None:
     found = read_gpx(files.UNTIMED.encode())
     assert [point[3] for point in found.tracks[0].points] == [None, None]
-    assert "2 of 2 points have no time" in found.notes[0]
+    assert "no time that can be read in 2 of 2 points" in found.notes[0]
 
 
 def test_impossible_coordinates_are_refused_one_by_one() -> None:
