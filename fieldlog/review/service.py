@@ -15,7 +15,7 @@ from fieldlog.errors import Refusal
 from fieldlog.ledger.entry import Entry
 from fieldlog.review.results import MEASURES, Measure, Result, more_needed, results
 from fieldlog.sheet.check import questions
-from fieldlog.sheet.question import Question
+from fieldlog.sheet.question import Question, thresholds_of
 from fieldlog.sheet.times import read_time
 from fieldlog.store.append import ForeignStoreError
 from fieldlog.store.db import AnySession
@@ -114,7 +114,7 @@ def day_sheet(session: AnySession, survey: str, *, day: str = "", member: str = 
         by_site[row["site"]].append(row)
     all_sites = sites_of(session, survey)
     site_of = {row["record"]: row["site"] for row in rows}
-    asked = Counter(site_of[question.record] for question in questions(rows, sites=all_sites, time_zone=zone))
+    asked = Counter(site_of[question.record] for question in questions(rows, sites=all_sites, thresholds=thresholds_of(head), time_zone=zone))
     doubtful = _two_versions_by_site(session, survey, site_of)
     lines = []
     for site in all_sites:
@@ -194,7 +194,7 @@ def site_sheet(session: AnySession, survey: str, record: str) -> SiteSheet:
     site = site_row(session, survey, record)
     rows = _observations(session, survey, observations.c.site == record)
     asked: dict[str, list[Question]] = defaultdict(list)
-    for question in questions(rows, sites=[site], time_zone=head["time_zone"]):
+    for question in questions(rows, sites=[site], thresholds=thresholds_of(head), time_zone=head["time_zone"]):
         asked[question.record].append(question)
     doubtful: dict[str, list[str]] = defaultdict(list)
     records = {row["record"] for row in rows}

@@ -3,7 +3,11 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, fields
+from typing import Any
+
+from fieldlog.sheet.subjects import ASKS
 
 
 @dataclass(frozen=True)
@@ -45,6 +49,12 @@ class Thresholds:
     north_readings: int = 5
     north_errors: float = 2.5
     """So many readings of an instrument's day, off by so many standard errors."""
+
+
+def thresholds_of(survey: Mapping[str, Any]) -> Thresholds:
+    """The thresholds that a survey's row sets; the defaults for those it does not."""
+    names = (field.name for field in fields(Thresholds))
+    return Thresholds(**{name: value for name in names if (value := survey.get(f"{ASKS}{name}")) is not None})
 
 
 def whole(angle_deg: float, limit_deg: int = 360) -> int:

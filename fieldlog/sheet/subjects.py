@@ -7,6 +7,27 @@ from typing import Final
 from fieldlog.sheet.fields import Field, Sheet
 from fieldlog.sheet.observation import OBSERVATION
 
+_THRESHOLDS: Final = (
+    ("square_deg", "number", "deg", 90, "Off square", "A slip face farther than this from square to its brink or crest."),
+    ("steepest_deg", "number", "deg", 90, "Steepest dip", "A slip face that dips more."),
+    ("gentlest_deg", "number", "deg", 90, "Gentlest dip", "A slip face that dips less."),
+    ("accuracies", "number", "", 100, "Accuracies", "A place beyond its site's radius and so many times its own accuracy."),
+    ("opposed_deg", "number", "deg", 90, "Turned round", "A slip face within this of opposite to the others."),
+    ("opposed_others", "integer", "", 1000, "Others for turned round", "At least so many others."),
+    ("opposed_resultant", "number", "", 1, "Their resultant length", "The others' resultant length, at least."),
+    ("outlier_readings", "integer", "", 1000, "Readings for an outlier", "From so many readings on."),
+    ("outlier_spreads", "number", "", 100, "Spreads for an outlier", "Farther than so many standard deviations from the nearest crowd."),
+    ("repeat_s", "number", "s", 86400, "Saved twice", "The same value on the same dune within this time."),
+    ("back_s", "number", "s", 86400, "Out of order", "Observed earlier than the one saved before it by more."),
+    ("declination_deg", "number", "deg", 180, "Declination that tells", "True and magnetic are told apart from this declination up."),
+    ("declination_steps", "number", "", 100, "Declination in steps", "And from so many reading steps up."),
+    ("north_readings", "integer", "", 1000, "Readings of an instrument", "So many readings of an instrument's day, at least."),
+    ("north_errors", "number", "", 100, "Errors of an instrument", "Off by so many standard errors."),
+)
+"""The thresholds of fieldlog.sheet.question that a survey may set; one that is not set keeps its default."""
+
+ASKS: Final = "ask_"
+
 SURVEY: Final = Sheet(
     kind="survey",
     label="Survey",
@@ -26,7 +47,13 @@ SURVEY: Final = Sheet(
               help="Fields of the observation that this survey switches on."),
         Field(name="note", type="text", max_length=2000, label="Note", group="survey",
               help="What the survey is for, hazards, agreements."),
+        *(
+            Field(name=f"{ASKS}{name}", type=kind, unit=unit, minimum=0, maximum=maximum, decimals=2 if kind == "number" else None,
+                  label=label, group="questions", help=explained)
+            for name, kind, unit, maximum, label, explained in _THRESHOLDS
+        ),
     ),
+    groups={"survey": "Survey", "questions": "When a check asks"},
 )
 
 CREW: Final = Sheet(

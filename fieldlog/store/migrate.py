@@ -29,8 +29,9 @@ def upgrade(url: str, revision: str = "head") -> None:
 
 
 def write_migration(url: str, message: str) -> None:
-    """Write a migration from what the models say and an up-to-date database does not have."""
-    command.revision(configuration(url), message=message, autogenerate=True)
+    """Write a migration, numbered on, from what the models say and an up-to-date database does not have."""
+    number = 1 + len(list((FOLDER / "versions").glob("[0-9]*.py")))
+    command.revision(configuration(url), message=message, autogenerate=True, rev_id=f"{number:04d}")
 
 
 def difference(connection: Connection) -> list[object]:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import io
+from dataclasses import asdict
 from typing import Any
 
 import segno
@@ -11,7 +12,8 @@ from flask import Blueprint, current_app, g, redirect, render_template, request,
 from fieldlog.errors import Refusal
 from fieldlog.people import service as people
 from fieldlog.people.access import callers
-from fieldlog.sheet.subjects import SITE, SURVEY
+from fieldlog.sheet.question import Thresholds
+from fieldlog.sheet.subjects import ASKS, SITE, SURVEY
 from fieldlog.store.append import ForeignStoreError
 from fieldlog.store.db import db
 from fieldlog.store.transaction import write
@@ -21,6 +23,7 @@ from fieldlog.surveys.forms import values_from
 blueprint = Blueprint("surveys", __name__, url_prefix="/surveys")
 
 SURVEY_FIELDS = ("name", "time_zone", "target_half_width_deg", "fewest_dunes", "reading_step_deg", "note")
+ASKING_FIELDS = tuple(field.name for field in SURVEY.fields if field.group == "questions")
 SITE_FIELDS = ("name", "lat_deg", "lon_deg", "radius_m", "dune_pattern", "dune_rule", "target_half_width_deg",
                "expected_facing_deg", "note")
 
@@ -70,6 +73,8 @@ def _set_up_page(survey: str, **more: Any) -> str:
         "desk/set_up.html",
         survey=row,
         fields=[SURVEY.by_name[name] for name in SURVEY_FIELDS],
+        asking=[SURVEY.by_name[name] for name in ASKING_FIELDS],
+        usual={f"{ASKS}{name}": value for name, value in asdict(Thresholds()).items()},
         optional=service.optional_fields(),
         switched_on=row["optional_fields"] or [],
         sites=service.sites_of(db.session, survey),
@@ -84,7 +89,7 @@ def _set_up_page(survey: str, **more: Any) -> str:
 def change(survey: str) -> Any:
     """Change what is said of the survey."""
     try:
-        values = values_from(SURVEY, request.form, SURVEY_FIELDS)
+        values = values_from(SURVEY, request.form, (*SURVEY_FIELDS, *ASKING_FIELDS))
         values["optional_fields"] = request.form.getlist("optional_fields")
         with write() as session:
             by = service.crew_of_lead(session, survey, g.lead.name)

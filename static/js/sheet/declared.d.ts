@@ -51,6 +51,21 @@ export interface SurveyRow {
   reading_step_deg: number | null;
   optional_fields: string[] | null;
   note: string | null;
+  ask_square_deg: number | null;
+  ask_steepest_deg: number | null;
+  ask_gentlest_deg: number | null;
+  ask_accuracies: number | null;
+  ask_opposed_deg: number | null;
+  ask_opposed_others: number | null;
+  ask_opposed_resultant: number | null;
+  ask_outlier_readings: number | null;
+  ask_outlier_spreads: number | null;
+  ask_repeat_s: number | null;
+  ask_back_s: number | null;
+  ask_declination_deg: number | null;
+  ask_declination_steps: number | null;
+  ask_north_readings: number | null;
+  ask_north_errors: number | null;
 }
 
 export interface CrewRow {

@@ -28,6 +28,16 @@ export const THRESHOLDS = {
 };
 
 /**
+ * The thresholds that a survey's row sets; the defaults for those it does not.
+ * @param {Readonly<Record<string, unknown>>} survey
+ * @returns {Thresholds}
+ */
+export function thresholdsOf(survey) {
+  const set = Object.keys(THRESHOLDS).map((name) => [name, survey[`ask_${name}`]]);
+  return {...THRESHOLDS, ...Object.fromEntries(set.filter(([, value]) => typeof value === 'number'))};
+}
+
+/**
  * Whole degrees, 0 <= x < limit: 359.7 reads 0.
  * @param {number} angleDeg
  * @param {number} [limitDeg]

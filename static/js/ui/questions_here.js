@@ -1,6 +1,7 @@
 /** What the checks ask about the readings of a site, less what the reader has kept as it is. */
 
 import {questions} from '../sheet/check.js';
+import {thresholdsOf} from '../sheet/question.js';
 
 /** @typedef {import('./parts.js').Notebook} Notebook */
 /** @typedef {import('../sheet/question.js').Question} Question */
@@ -46,7 +47,8 @@ function ask(notebook, site, kept) {
   const found = new Map();
   const rows = /** @type {any[]} */ (notebook.observations({site}));
   const sites = /** @type {any[]} */ (notebook.sites());
-  for (const question of questions(rows, {sites, timeZone: notebook.survey()?.time_zone ?? 'UTC'})) {
+  const survey = /** @type {any} */ (notebook.survey() ?? {});
+  for (const question of questions(rows, {sites, thresholds: thresholdsOf(survey), timeZone: survey.time_zone ?? 'UTC'})) {
     if (kept.has(`${question.record} ${question.code}`)) continue;
     found.set(question.record, [...(found.get(question.record) ?? []), question]);
   }
