@@ -16,8 +16,9 @@ from fieldlog.ledger.entry import Entry
 from fieldlog.review.results import MEASURES, Measure, Result, more_needed, results
 from fieldlog.sheet.check import questions
 from fieldlog.sheet.question import Question, thresholds_of
+from fieldlog.sheet.subjects import label_in
 from fieldlog.sheet.times import read_time
-from fieldlog.store.append import ForeignStoreError
+from fieldlog.store.append import ForeignStoreError, say
 from fieldlog.store.db import AnySession
 from fieldlog.store.projection import numbered_entries_of
 from fieldlog.store.tables import LedgerEntry, SurveyCounter, TwoVersions, observations, photos
@@ -74,6 +75,7 @@ class SiteSheet:
     results: dict[str, list[Result]]
     questions: dict[str, list[Question]]
     two_versions: dict[str, list[str]]
+    own_versions: dict[str, list[VersionLine]]
     photos: dict[str, list[Row]]
     measures: tuple[Measure, ...] = MEASURES
 
@@ -86,6 +88,7 @@ class Change:
     """
 
     seq: int
+    n: int
     who: str
     device: str
     at_base: bool
@@ -206,7 +209,7 @@ def site_sheet(session: AnySession, survey: str, record: str) -> SiteSheet:
     return SiteSheet(
         head, site, crew_names(session, survey), rows,
         {m.column: results(head, site, rows, m) for m in MEASURES},
-        asked, doubtful, photos_of(session, survey, records),
+        asked, doubtful, versions_of_record(session, survey, record), photos_of(session, survey, records),
     )
 
 
@@ -242,7 +245,7 @@ def history(session: AnySession, survey: str, record: str) -> list[Change]:
         fields = [(name, _before(entry, name, by_name), value) for name, value in entry.values.items()]
         by = entry.body["by"]
         changes.append(Change(
-            seq=seq, who=names.get(by, by), device=entry.device, at_base=entry.device == desk,
+            seq=seq, n=entry.n, who=names.get(by, by), device=entry.device, at_base=entry.device == desk,
             made_at=read_time(entry.body["made_at"]), received_at=received[seq], fields=fields,
         ))
     return changes
@@ -262,13 +265,42 @@ def observation_row(session: AnySession, survey: str, record: str) -> Row:
     return found[0]
 
 
-def versions_of_record(session: AnySession, survey: str, record: str) -> dict[str, list[Any]]:
+@dataclass(frozen=True)
+class VersionLine:
+    """One of two versions: its entry, what it says, and who said it when."""
+
+    entry: str
+    value: Any
+    who: str
+    made_at: datetime
+
+
+def versions_of_record(session: AnySession, survey: str, record: str) -> dict[str, list[VersionLine]]:
     """Field -> its versions, the provisional one first."""
+    told = {f"{change.device}-{change.n}": change for change in history(session, survey, record)}
     return {
-        name: [version["value"] for version in versions]
+        name: [
+            VersionLine(v["entry"], v["value"], told[v["entry"]].who, told[v["entry"]].made_at) for v in versions
+        ]
         for name, versions in session.execute(
-            select(TwoVersions.field, TwoVersions.versions).where(
-                TwoVersions.survey == survey, TwoVersions.record == record
-            )
+            select(TwoVersions.field, TwoVersions.versions)
+            .where(TwoVersions.survey == survey, TwoVersions.record == record)
+            .order_by(TwoVersions.field)
         )
     }
+
+
+def choose_version(session: AnySession, survey: str, by: str, record: str, field: str, entry: str) -> str:
+    """Let one of two versions stand, as an entry over both; the record's kind. Inside `write()`.
+
+    Refusal where the versions are no longer those that were looked at.
+    """
+    row = session.get(TwoVersions, (survey, record, field))
+    chosen = [v["value"] for v in row.versions if v["entry"] == entry] if row else []
+    if row is None or not chosen:
+        raise Refusal(
+            "these are no longer the versions", label_in("observation", field), "Somebody has chosen or changed it meanwhile: look again"
+        )
+    kind = row.kind
+    say(session, survey, by=by, kind=kind, values={field: chosen[0]}, record=record)
+    return kind

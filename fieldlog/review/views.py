@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from typing import Any
 
-from flask import Blueprint, render_template, request
+from flask import Blueprint, g, redirect, render_template, request, url_for
 from markupsafe import Markup
 
 from fieldlog.draw.rose import rose
@@ -15,7 +15,8 @@ from fieldlog.review import service
 from fieldlog.review.results import Result
 from fieldlog.sheet.observation import OBSERVATION
 from fieldlog.store.db import db
-from fieldlog.surveys.service import crew_names, site_row, survey_row
+from fieldlog.store.transaction import write
+from fieldlog.surveys.service import crew_names, crew_of_lead, site_row, survey_row
 
 blueprint = Blueprint("review", __name__, url_prefix="/surveys/<survey>")
 
@@ -64,6 +65,19 @@ def observation(survey: str, record: str) -> str:
         versions=service.versions_of_record(db.session, survey, record),
         photos=service.photos_of(db.session, survey, {record}).get(record, []),
     )
+
+
+@blueprint.post("/records/<record>/choose")
+@callers("lead")
+def choose(survey: str, record: str) -> Any:
+    """Let one of two versions stand."""
+    field, _, entry = request.form.get("version", "").partition(" ")
+    with write() as session:
+        by = crew_of_lead(session, survey, g.lead.name)
+        kind = service.choose_version(session, survey, by, record, field, entry)
+    if kind in ("site", "observation"):
+        return redirect(url_for(f"review.{kind}", survey=survey, record=record))
+    return redirect(url_for("review.day", survey=survey))
 
 
 def small_rose(result: Result, identifier: str) -> Markup:

@@ -53,6 +53,7 @@ TABLE: dict[str, tuple[Any, ...]] = {
     "review.day": LEAD,
     "review.site": LEAD,
     "review.observation": LEAD,
+    "review.choose": LEAD,
     "exports.page": LEAD,
     "exports.file": LEAD,
     "imports.page": LEAD,

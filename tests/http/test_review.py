@@ -16,10 +16,11 @@ from sqlalchemy import event, select
 from fieldlog.ledger.entry import write_text
 from fieldlog.science.summary import summarise
 from fieldlog.store.db import db
+from fieldlog.store.rebuild import check
 from fieldlog.store.tables import observations
 from fieldlog.store.transaction import write
 from fieldlog.surveys.service import put_site
-from tests.http.conftest import Base
+from tests.http.conftest import Base, csrf
 
 FACES = [214, 220, 209, 231, 198, 205, 217, 222, 240, 210]
 
@@ -147,6 +148,62 @@ def test_two_versions_are_both_shown_and_named_on_the_day_sheet(base: Base, desk
     assert "Two versions of Slip face bearing" in page
     assert "200" in page
     assert "300" in page
+
+
+def two_versions(base: Base) -> str:
+    """A record whose slip face two people changed without seeing each other, to 200 and to 300."""
+    one, other = Notebook(base, "Ysolde"), Notebook(base, "Samir")
+    record = one.read(214)
+    for notebook, face in ((one, 200), (other, 300)):
+        notebook.say({"slip_face_read_deg": face}, record=record, over={"slip_face_read_deg": [record]}, saw=[record])
+    return record
+
+
+def test_the_leads_choice_is_an_entry_over_both(base: Base, desk: FlaskClient) -> None:
+    record = two_versions(base)
+    address = f"/surveys/{base.survey}/observations/{record}"
+    page = desk.get(address).get_data(as_text=True)
+    offered = re.findall(r'name="version" value="(slip_face_read_deg [^"]+)">Keep <bdi>(\d+)°', page)
+    assert {face for _, face in offered} == {"200", "300"}
+    chosen = next(value for value, face in offered if face == "300")
+    choose = f"/surveys/{base.survey}/records/{record}/choose"
+    answer = desk.post(choose, data={"csrf_token": csrf(page), "version": chosen})
+    assert answer.location == address
+    after = desk.get(address).get_data(as_text=True)
+    assert "Two versions" not in after
+    with base.app.app_context():
+        assert db.session.scalar(select(observations.c.slip_face_deg)) == 300
+        assert list(check(db.session)) == []
+    again = desk.post(choose, data={"csrf_token": csrf(page), "version": chosen})
+    assert again.status_code == 422
+    assert "no longer the versions" in again.get_data(as_text=True)
+
+
+def test_an_edit_made_meanwhile_is_two_versions_again(base: Base, desk: FlaskClient) -> None:
+    record = two_versions(base)
+    page = desk.get(f"/surveys/{base.survey}/observations/{record}").get_data(as_text=True)
+    value = re.search(r'name="version" value="([^"]+)"', page)
+    assert value
+    desk.post(f"/surveys/{base.survey}/records/{record}/choose", data={"csrf_token": csrf(page), "version": value[1]})
+    late = Notebook(base, "Tome")
+    late.say({"slip_face_read_deg": 90}, record=record, over={"slip_face_read_deg": [record]}, saw=[record])
+    assert "two versions" in sheet(desk, base)
+
+
+def test_cross_out_against_edit_is_chosen_too(base: Base, desk: FlaskClient) -> None:
+    one, other = Notebook(base, "Ysolde"), Notebook(base, "Samir")
+    record = one.read(214)
+    one.say({"crossed_out": "wrong dune"}, record=record, saw=[record])
+    other.say({"slip_face_read_deg": 300}, record=record, over={"slip_face_read_deg": [record]}, saw=[record])
+    address = f"/surveys/{base.survey}/observations/{record}"
+    page = desk.get(address).get_data(as_text=True)
+    assert "Keep <bdi>it standing</bdi>" in page
+    value = re.search(r'name="version" value="([^"]+)">Keep <bdi>it standing', page)
+    assert value
+    desk.post(f"/surveys/{base.survey}/records/{record}/choose", data={"csrf_token": csrf(page), "version": value[1]})
+    assert "Two versions" not in desk.get(address).get_data(as_text=True)
+    with base.app.app_context():
+        assert db.session.execute(select(observations.c.crossed_out, observations.c.slip_face_deg)).one() == (None, 300)
 
 
 def test_what_people_write_stays_text(base: Base, desk: FlaskClient) -> None:
