@@ -33,6 +33,7 @@ class Merged:
 
     `heads` holds the heads of every field, `frontier` the entries that no other has seen: what an
     editor lists in `over` and `saw`. `two_versions` maps a field to its versions, highest first.
+    `offsets_ms` is what the entry whose value of a field is shown knew of its device's clock.
     """
 
     created: Entry | None
@@ -40,6 +41,7 @@ class Merged:
     heads: dict[str, tuple[str, ...]]
     frontier: tuple[str, ...]
     two_versions: dict[str, tuple[Version, ...]]
+    offsets_ms: dict[str, int | None]
 
 
 def merge(entries: Iterable[Entry]) -> Merged:
@@ -64,6 +66,7 @@ def merge(entries: Iterable[Entry]) -> Merged:
         heads={field: tuple(row.name for row in rows) for field, rows in heads.items()},
         frontier=tuple(sorted(name for name in by_name if name not in seen)),
         two_versions=two_versions,
+        offsets_ms={field: rows[0].body.get("offset") for field, rows in heads.items()},
     )
 
 

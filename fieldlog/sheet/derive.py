@@ -29,13 +29,13 @@ def correction_deg(row: Mapping[str, Any]) -> float | None:
 
 
 def derive(sheet: Sheet, row: Mapping[str, Any]) -> dict[str, float | None]:
-    """The derived fields of one record: degrees from true north, rounded to the sheet's decimals.
+    """The derived bearings of one record: degrees from true north, rounded to the sheet's decimals.
 
     A value is None where the bearing or its correction is missing.
     """
     derived: dict[str, float | None] = {}
     for field in sheet.fields:
-        if not field.is_derived:
+        if not (field.is_derived and field.is_angle):
             continue
         read = _number(row.get(field.derived_from[0]))
         correction = correction_deg(row)

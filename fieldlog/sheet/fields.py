@@ -36,7 +36,8 @@ class Field:
     "day". `measure` fields may be answered "none here" or "could not be measured". `optional`
     fields stay off until a survey switches them on. `derived_from` names the fields from which
     the projection computes this one; such a field never travels. `asked` fields stand in the
-    phone's form; the others are filled by the phone itself. `retired` fields are still read and
+    phone's form; the others are filled by the phone itself. `clocked` times come from the
+    device's clock: rows show them corrected by what the entry knew of that clock. `retired` fields are still read and
     exported, never asked.
     """
 
@@ -58,6 +59,7 @@ class Field:
     optional: bool = False
     derived_from: tuple[str, ...] = ()
     asked: bool = True
+    clocked: bool = False
     retired: bool = False
 
     def __post_init__(self) -> None:

@@ -14,6 +14,7 @@ from typing import Any
 from fieldlog.sheet.cautions import CAUTIONS
 from fieldlog.sheet.fields import ABSENCES, Field
 from fieldlog.sheet.subjects import PHONE_KINDS, SHEETS
+from fieldlog.sheet.times import CLOCK_OFF_MS
 from fieldlog.sheet.vocabulary import VOCABULARIES
 
 TYPES = {
@@ -36,7 +37,7 @@ HEAD = "// Made by `python -m fieldlog.sheet.generate` from fieldlog/sheet/. Do 
 def _field(field: Field) -> dict[str, Any]:
     keys = ("name", "type", "label", "help", "group", "unit", "minimum", "maximum", "decimals", "vocabulary",
             "refers_to", "max_length", "required", "measure", "carries", "optional", "derived_from", "asked",
-            "retired")
+            "clocked", "retired")
     return {key: getattr(field, key) for key in keys}
 
 
@@ -55,7 +56,7 @@ def declaration() -> dict[str, Any]:
         name: [{"value": w.value, "label": w.label, "definition": w.definition, "retired": w.retired} for w in rows]
         for name, rows in VOCABULARIES.items()
     }
-    constants = {"absences": ABSENCES, "phone_kinds": sorted(PHONE_KINDS), "cautions": list(CAUTIONS)}
+    constants = {"absences": ABSENCES, "phone_kinds": sorted(PHONE_KINDS), "cautions": list(CAUTIONS), "clock_off_ms": CLOCK_OFF_MS}
     body = {"SHEETS": sheets, "VOCABULARIES": words, "CONSTANTS": constants}
     version = hashlib.sha256(json.dumps(body, sort_keys=True).encode()).hexdigest()[:12]
     constants["sheet_version"] = version
@@ -103,6 +104,7 @@ export interface FieldDeclaration {
   carries: string;
   optional: boolean;
   derived_from: string[];
+  clocked: boolean;
   asked: boolean;
   retired: boolean;
 }
@@ -124,6 +126,7 @@ export const CONSTANTS: {
   absences: Record<string, string>;
   phone_kinds: string[];
   cautions: string[];
+  clock_off_ms: number;
   sheet_version: string;
 };
 """

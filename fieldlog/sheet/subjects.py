@@ -109,7 +109,7 @@ PHOTO: Final = Sheet(
               group="photo", help="Height of the picture."),
         Field(name="bearing_deg", type="direction", unit="deg", decimals=1, label="Looking towards", group="photo",
               help="True bearing that the camera looked along."),
-        Field(name="taken_at", type="time", label="Taken at", group="photo", help="UTC."),
+        Field(name="taken_at", type="time", clocked=True, label="Taken at", group="photo", help="UTC."),
         Field(name="crossed_out", type="text", max_length=200, label="Crossed out because", group="photo",
               help="The reason; empty while the photo stands."),
     ),

@@ -23,9 +23,24 @@ def configuration(url: str) -> Config:
     return config
 
 
-def upgrade(url: str, revision: str = "head") -> None:
-    """Run all migrations that the database has not seen."""
+def upgrade(url: str, revision: str = "head") -> bool:
+    """Run all migrations that the database has not seen; whether one that held something was changed."""
+    before = _revision(url)
     command.upgrade(configuration(url), revision)
+    return before is not None and before != _revision(url)
+
+
+def downgrade(url: str, revision: str) -> None:
+    """Go back to an earlier shape."""
+    command.downgrade(configuration(url), revision)
+
+
+def _revision(url: str) -> str | None:
+    engine = engine_for(url)
+    with engine.connect() as connection:
+        found = MigrationContext.configure(connection).get_current_revision()
+    engine.dispose()
+    return found
 
 
 def write_migration(url: str, message: str) -> None:

@@ -45,6 +45,12 @@ def check(session: AnySession, progress: Progress | None = None) -> Iterator[Fau
         yield from _check_tables(session, survey, progress)
 
 
+def rebuild_all(session: AnySession) -> None:
+    """Rebuild every survey. Inside `write()`."""
+    for survey in session.scalars(select(SurveyCounter.survey)).all():
+        rebuild(session, survey)
+
+
 def rebuild(session: AnySession, survey: str) -> None:
     """Empty one survey's projected tables and fill them from the ledger. Inside `write()`."""
     for table in TABLES.values():

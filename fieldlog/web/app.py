@@ -17,6 +17,7 @@ from fieldlog.people.views import load_session
 from fieldlog.store.db import db, engine_url, set_up_engine
 from fieldlog.store.identity import ensure_identity
 from fieldlog.store.migrate import upgrade
+from fieldlog.store.rebuild import rebuild_all
 from fieldlog.store.transaction import write
 from fieldlog.web.folders import static_folder, template_folder
 from fieldlog.web.formats import set_up_formats
@@ -51,7 +52,7 @@ TRIES: Final = {
 def create_app(settings: Settings) -> Flask:
     """Bring the database up to date and assemble the application."""
     settings.data_dir.mkdir(parents=True, exist_ok=True)
-    upgrade(settings.database_url)
+    changed = upgrade(settings.database_url)
     app = Flask("fieldlog", static_folder=str(static_folder()), template_folder=str(template_folder()))
     app.config.update(
         ERGBOOK=settings,
@@ -71,6 +72,8 @@ def create_app(settings: Settings) -> Flask:
         set_up_engine(db.engine)
         with write() as session:
             ensure_identity(session)
+            if changed:  # new columns of derived fields are filled from the ledger
+                rebuild_all(session)
     _set_up_people(app)
     set_up_problems(app)
     set_up_headers(app)

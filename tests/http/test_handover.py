@@ -22,10 +22,10 @@ from fieldlog.store.transaction import write
 from tests.http.conftest import Base, PhoneClient
 
 
-def text(base: Base, phone: PhoneClient, n: int, **values: Any) -> str:
+def text(base: Base, phone: PhoneClient, n: int, offset_ms: int | None = None, **values: Any) -> str:
     said = {"site": base.site, "observed_at": "2026-07-08T05:06:07Z", "north": "true", "crest_read_deg": n % 360}
     return write_text(app="0.1.0", by=phone.crew, survey=base.survey, kind="observation", values={**said, **values},
-                      hlc=f"{n:012x}.0000", made_at=datetime(2026, 7, 8, 5, 6, 7, tzinfo=UTC))
+                      hlc=f"{n:012x}.0000", made_at=datetime(2026, 7, 8, 5, 6, 7, tzinfo=UTC), offset_ms=offset_ms)
 
 
 def test_a_batch_arrives_packed_and_is_answered_entry_by_entry(base: Base) -> None:
@@ -39,6 +39,17 @@ def test_a_batch_arrives_packed_and_is_answered_entry_by_entry(base: Base) -> No
     assert told["store"] == phone.head["store"]
     with base.app.app_context():
         assert db.session.scalars(select(observations.c.crest_deg)).all() == [1]
+
+
+def test_a_wrong_clock_is_corrected_by_what_the_phone_learnt_and_never_refused(base: Base) -> None:
+    phone = base.phone()
+    told = phone.push(1, [text(base, phone, 1, offset_ms=365 * 86_400_000), text(base, phone, 2, observed_at="1999-01-01T00:00:00Z")])
+    assert [result["status"] for result in told.get_json()["results"]] == ["stored", "stored"]
+    with base.app.app_context():
+        rows = db.session.execute(select(observations.c.observed_at, observations.c.observed_by_clock).order_by(observations.c.record))
+        assert [[when.isoformat() for when in row] for row in rows] == [
+            ["2027-07-08T05:06:07+00:00", "2026-07-08T05:06:07+00:00"], ["1999-01-01T00:00:00+00:00"] * 2,
+        ]
 
 
 def test_changes_come_consecutive_and_own_ones_without_their_text(base: Base) -> None:

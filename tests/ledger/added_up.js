@@ -7,7 +7,7 @@ import {project} from '../../static/js/ledger/project.js';
 /** @param {{device: string, n: number, text: string}[]} texts */
 export function addedUp(texts) {
   const entries = texts.map(({device, n, text}) => readEntry(device, n, text)).filter((entry) => entry !== null);
-  const {created, values, heads, frontier, twoVersions} = merge(entries);
-  const row = created ? project({created, values, heads, frontier, twoVersions}) : null;
+  const {created, values, heads, frontier, twoVersions, offsetsMs} = merge(entries);
+  const row = created ? project({created, values, heads, frontier, twoVersions, offsetsMs}) : null;
   return {created: created?.name ?? null, values, heads, frontier, two_versions: twoVersions, row};
 }

@@ -31,10 +31,10 @@ VALUES: dict[str, tuple[Any, ...]] = {
 def entry_of(case: dict[str, Any]) -> Entry:
     """The entry of a short case: its name, `hlc` in milliseconds, and what the text says."""
     device, n = split_name(case["name"])
-    said = {key: value for key, value in case.items() if key not in ("name", "hlc", "kind")}
+    said = {key: value for key, value in case.items() if key not in ("name", "hlc", "kind", "offset")}
     body = {
         "v": 0, "app": "0.1.0", "by": entry_name(DEVICES[0], 1), "survey": "0" * 10, "kind": case.get("kind", "site"),
-        **said, "hlc": f"{case['hlc']:012x}.0000", "offset": None, "made_at": "2026-03-04T05:06:07.123Z",
+        **said, "hlc": f"{case['hlc']:012x}.0000", "offset": case.get("offset"), "made_at": "2026-03-04T05:06:07.123Z",
     }
     return Entry(device, n, json.dumps(body, ensure_ascii=False))
 

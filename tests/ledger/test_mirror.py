@@ -33,7 +33,7 @@ def expected_row(case: dict[str, Any], row: dict[str, Any]) -> None:
 
 
 def projection_entry(case: dict[str, Any]) -> dict[str, Any]:
-    return {"name": "000000000000000-7", "hlc": 1, "kind": case["kind"], "set": case["set"]}
+    return {"name": "000000000000000-7", "hlc": 1, "kind": case["kind"], "set": case["set"], "offset": case.get("offset")}
 
 
 @pytest.mark.parametrize("case", MERGES, ids=lambda case: case["what"])

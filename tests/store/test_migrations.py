@@ -2,12 +2,17 @@
 
 from __future__ import annotations
 
-from sqlalchemy import ForeignKeyConstraint, inspect
+from flask import Flask
+from sqlalchemy import ForeignKeyConstraint, func, inspect, select
 
+from fieldlog.ledger.names import new_device
 from fieldlog.people import models as _people_models  # noqa: F401  its tables belong to the metadata
-from fieldlog.store import tables as _tables  # noqa: F401
-from fieldlog.store.db import Base
-from fieldlog.store.migrate import difference, engine_for, upgrade
+from fieldlog.store.db import Base, db
+from fieldlog.store.migrate import difference, downgrade, engine_for, upgrade
+from fieldlog.store.rebuild import check
+from fieldlog.store.tables import observations
+from fieldlog.web.app import create_app
+from tests.factories import Survey, send
 
 WITHOUT_A_SURVEY = {"store_identity", "lead", "one_time_link", "joining_code", "audit_line", "alembic_version"}
 """Tables of the store and its people as a whole; a code or an audit line only names a survey."""
@@ -20,6 +25,22 @@ def test_nothing_separates_the_models_from_a_migrated_database(database_url: str
     with engine.connect() as connection:
         assert difference(connection) == []
     engine.dispose()
+
+
+def test_an_older_store_is_brought_forward_and_filled_from_its_ledger(app: Flask) -> None:
+    settings = app.config["ERGBOOK"]
+    with app.app_context():
+        survey = Survey()
+        assert set(send(survey, new_device(), survey.batch(range(1, 4)))) == {"stored"}
+        db.session.remove()
+        db.engine.dispose()
+    downgrade(settings.database_url, "0001")
+    again = create_app(settings)
+    with again.app_context():
+        assert list(check(db.session)) == []
+        assert db.session.scalar(select(func.count()).where(observations.c.observed_by_clock.is_not(None))) == 3
+        db.session.remove()
+        db.engine.dispose()
 
 
 def test_every_constraint_has_a_name_in_the_database(database_url: str) -> None:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from alembic import context
-from fieldlog.people import models as _people_models  # noqa: F401  its tables belong to the metadata
+import fieldlog.people.models as _people_models  # noqa: F401  its tables belong to the metadata
 
 from fieldlog.store import tables as _tables  # noqa: F401
 from fieldlog.store.db import Base, as_writer

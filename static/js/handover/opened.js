@@ -1,5 +1,6 @@
 /** A notebook that is open: rows in memory, saving, and its side of handing over. */
 
+import {clockOffMs} from '../ledger/project.js';
 import {Replica} from '../ledger/replica.js';
 import {CONSTANTS} from '../sheet/declared.js';
 import {draftsOf} from '../store/drafts.js';
@@ -131,6 +132,11 @@ export class Notebook {
       setAside: CONSTANTS.phone_kinds.flatMap((kind) => this.replica.rows(kind)).reduce((sum, row) => sum + row.setAside.length, 0),
       fromNewerApp: this.replica.newer.size,
     };
+  }
+
+  /** How far this phone's clock is taken to be off, milliseconds: base's less its own. */
+  clockOffMs() {
+    return clockOffMs(this.kept.offsetMs);
   }
 
   /** Handing over: `start()`, `stop()`, `now()`, and `state`. */

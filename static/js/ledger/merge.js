@@ -17,6 +17,7 @@ import {highestFirst} from './entry.js';
  * @property {Record<string, string[]>} heads what an editor lists in `over`
  * @property {string[]} frontier entries that no other has seen: what an editor lists in `saw`
  * @property {Record<string, Version[]>} twoVersions field -> its versions, highest first
+ * @property {Record<string, number | null>} offsetsMs what the entry whose value of a field is shown knew of its device's clock
  */
 
 const CROSSED_OUT = 'crossed_out';
@@ -49,6 +50,7 @@ export function merge(entries) {
     heads: Object.fromEntries([...heads].map(([field, rows]) => [field, rows.map((row) => row.name)])),
     frontier: [...byName.keys()].filter((name) => !seen.has(name)).sort(),
     twoVersions: Object.fromEntries(twoVersions),
+    offsetsMs: Object.fromEntries([...heads].map(([field, rows]) => [field, rows[0].body.offset ?? null])),
   };
 }
 

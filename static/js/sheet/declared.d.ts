@@ -18,6 +18,7 @@ export interface FieldDeclaration {
   carries: string;
   optional: boolean;
   derived_from: string[];
+  clocked: boolean;
   asked: boolean;
   retired: boolean;
 }
@@ -39,6 +40,7 @@ export const CONSTANTS: {
   absences: Record<string, string>;
   phone_kinds: string[];
   cautions: string[];
+  clock_off_ms: number;
   sheet_version: string;
 };
 
@@ -96,6 +98,7 @@ export interface ObservationRow {
   face: string | null;
   dune_type: string | null;
   observed_at: string | null;
+  observed_by_clock: string | null;
   lat_deg: number | null;
   lon_deg: number | null;
   altitude_m: number | null;

@@ -28,6 +28,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -49,6 +50,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -70,6 +72,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -91,6 +94,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -112,6 +116,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -133,6 +138,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -154,6 +160,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -175,6 +182,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -196,6 +204,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -217,6 +226,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -238,6 +248,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -259,6 +270,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -280,6 +292,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -301,6 +314,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -322,6 +336,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -343,6 +358,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -364,6 +380,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -385,6 +402,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -406,6 +424,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -427,6 +446,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -448,6 +468,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -469,6 +490,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    }
   ]
@@ -497,6 +519,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -518,6 +541,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    }
   ]
@@ -546,6 +570,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -567,6 +592,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -588,6 +614,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -609,6 +636,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -630,6 +658,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -651,6 +680,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -672,6 +702,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -693,6 +724,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -714,6 +746,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -735,6 +768,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    }
   ]
@@ -774,6 +808,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -795,6 +830,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -816,6 +852,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -837,6 +874,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -858,13 +896,14 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
     "name": "observed_at",
     "type": "time",
     "label": "Observed at",
-    "help": "When the reading was taken, UTC.",
+    "help": "When the reading was taken, UTC; corrected where the phone's clock was more than a minute off.",
     "group": "fix",
     "unit": "",
     "minimum": null,
@@ -879,6 +918,31 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": true,
+    "retired": false
+   },
+   {
+    "name": "observed_by_clock",
+    "type": "time",
+    "label": "Observed at, by the phone's clock",
+    "help": "The same as the phone's own clock had it, UTC.",
+    "group": "fix",
+    "unit": "",
+    "minimum": null,
+    "maximum": null,
+    "decimals": null,
+    "vocabulary": null,
+    "refers_to": null,
+    "max_length": 500,
+    "required": false,
+    "measure": false,
+    "carries": "",
+    "optional": false,
+    "derived_from": [
+     "observed_at"
+    ],
+    "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -900,6 +964,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -921,6 +986,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -942,6 +1008,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -963,6 +1030,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -984,6 +1052,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1005,6 +1074,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1026,6 +1096,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1047,6 +1118,7 @@ export const SHEETS = {
     "optional": true,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1068,6 +1140,7 @@ export const SHEETS = {
     "optional": true,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1089,6 +1162,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1110,6 +1184,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1131,6 +1206,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1152,6 +1228,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1173,6 +1250,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1194,6 +1272,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1215,6 +1294,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1236,6 +1316,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1262,6 +1343,7 @@ export const SHEETS = {
      "convergence_deg"
     ],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1283,6 +1365,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1304,6 +1387,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1325,6 +1409,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1346,6 +1431,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1373,6 +1459,7 @@ export const SHEETS = {
      "convergence_deg"
     ],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1394,6 +1481,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1415,6 +1503,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1436,6 +1525,7 @@ export const SHEETS = {
     "optional": true,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1462,6 +1552,7 @@ export const SHEETS = {
      "convergence_deg"
     ],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1483,6 +1574,7 @@ export const SHEETS = {
     "optional": true,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1509,6 +1601,7 @@ export const SHEETS = {
      "convergence_deg"
     ],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1530,6 +1623,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1551,6 +1645,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1572,6 +1667,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1593,6 +1689,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1614,6 +1711,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1635,6 +1733,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1656,6 +1755,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1677,6 +1777,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1698,6 +1799,7 @@ export const SHEETS = {
     "optional": true,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1719,6 +1821,7 @@ export const SHEETS = {
     "optional": true,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1740,6 +1843,7 @@ export const SHEETS = {
     "optional": true,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1761,6 +1865,7 @@ export const SHEETS = {
     "optional": true,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1782,6 +1887,7 @@ export const SHEETS = {
     "optional": true,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1803,6 +1909,7 @@ export const SHEETS = {
     "optional": true,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1824,6 +1931,7 @@ export const SHEETS = {
     "optional": true,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1845,6 +1953,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1866,6 +1975,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1887,6 +1997,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1908,6 +2019,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": false,
+    "clocked": false,
     "retired": false
    }
   ]
@@ -1936,6 +2048,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1957,6 +2070,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1978,6 +2092,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -1999,6 +2114,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -2020,6 +2136,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -2041,6 +2158,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -2062,6 +2180,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": true,
     "retired": false
    },
    {
@@ -2083,6 +2202,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    }
   ]
@@ -2111,6 +2231,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -2132,6 +2253,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -2153,6 +2275,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -2174,6 +2297,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    },
    {
@@ -2195,6 +2319,7 @@ export const SHEETS = {
     "optional": false,
     "derived_from": [],
     "asked": true,
+    "clocked": false,
     "retired": false
    }
   ]
@@ -2784,5 +2909,6 @@ export const CONSTANTS = {
   "Positions and phone compasses can be wrong. This is no navigation, rescue or engineering-design instrument.",
   "Decisions that can hurt someone rest with local codes and licensed practitioners."
  ],
- "sheet_version": "4a3b3d39b58e"
+ "clock_off_ms": 60000,
+ "sheet_version": "27a6ef92678d"
 };

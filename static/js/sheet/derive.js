@@ -15,7 +15,7 @@ export function correctionDeg(row) {
 }
 
 /**
- * The derived fields of one record, degrees from true north, rounded to the sheet's decimals.
+ * The derived bearings of one record, degrees from true north, rounded to the sheet's decimals.
  * @param {SheetDeclaration} sheet
  * @param {Record<string, unknown>} row
  * @returns {Record<string, number | null>}
@@ -24,7 +24,7 @@ export function derive(sheet, row) {
   /** @type {Record<string, number | null>} */
   const derived = {};
   for (const field of sheet.fields) {
-    if (!field.derived_from.length) continue;
+    if (!field.derived_from.length || field.type === 'time') continue;
     const read = number(row[field.derived_from[0]]);
     const correction = correctionDeg(row);
     if (read === null || correction === null) {

@@ -9,7 +9,6 @@ import {THEMES} from './theme.js';
 /** @typedef {import('./parts.js').Parts} Parts */
 
 const OLD_MS = 12 * 3600_000;
-const CLOCK_OFF_MS = 60_000;
 
 /** @type {import('./parts.js').Mount} */
 export function mountHandOver({main, dock, signal}, parts) {
@@ -52,7 +51,8 @@ export function mountHandOver({main, dock, signal}, parts) {
     const readings = notebook.observations().filter((row) => !row.atBase).length;
     const nothing = !unsent && !unsentPhotos;
     fill(held, el('b', {}, readings || unsent || unsentPhotos), ` ${nothing ? 'on this phone only: base has everything' : heldText(readings, unsent, unsentPhotos)}`);
-    const {phase, sent, of, photosSent, photosOf, lastAt, message, mend, offsetMs} = notebook.handover.state;
+    const {phase, sent, of, photosSent, photosOf, lastAt, message, mend} = notebook.handover.state;
+    const off = notebook.clockOffMs();
     say(state, stateText(parts, {phase, sent, of, photosSent, photosOf, lastAt}));
     progress.hidden = phase !== 'sending' || !(of + photosOf);
     progress.max = Math.max(1, of + photosOf);
@@ -65,7 +65,7 @@ export function mountHandOver({main, dock, signal}, parts) {
       setAside > 0 && problem(`Base could not keep ${count(setAside, 'entry', 'entries')}.`, 'They stay here. Open the readings marked on Today and mend what is said there.'),
       setAsideLines(parts),
       age > OLD_MS && problem(`The oldest is ${span(age)} old and exists only here.`, 'Hand over as soon as there is a connection: a lost phone loses it.'),
-      offsetMs !== null && Math.abs(offsetMs) > CLOCK_OFF_MS && problem(`This phone's clock is ${span(Math.abs(offsetMs))} ${offsetMs > 0 ? 'behind' : 'ahead'}.`, 'Set it by the network; times already saved carry the difference.'),
+      off !== 0 && problem(`This phone's clock is ${span(Math.abs(off))} ${off > 0 ? 'behind' : 'ahead'}.`, 'Set it by the network; times already saved carry the difference.'),
     );
     fill(version, ...versionLines(parts, hand.isBegun()));
   }

@@ -22,7 +22,7 @@ export function mountReading({main, dock, signal}, parts) {
     set: hand.set,
     isCarried: hand.isCarried,
     watch: hand.watch,
-    frame: () => bearingFrame(hand.spot(), clock(), hand.values().north),
+    frame: () => bearingFrame(hand.spot(), clock() + notebook.clockOffMs(), hand.values().north),
   };
   const form = sheetForm({
     sheet: OBSERVATION,

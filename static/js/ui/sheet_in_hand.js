@@ -29,7 +29,7 @@ const BY_PHONE = ['lat_deg', 'lon_deg', 'fix_method'];
  */
 export async function openSheet({notebook, position, clock}) {
   const lateFixes = createLateFixes({notebook, position, clock});
-  const today = () => day(clock(), notebook.survey()?.time_zone);
+  const today = () => day(clock() + notebook.clockOffMs(), notebook.survey()?.time_zone);
   const draft = /** @type {Draft | undefined} */ (await notebook.draft.get(DRAFT));
   let state = draft?.values ? draft : firstOfVisit(notebook, today());
   let photos = /** @type {Taken[]} */ ((await notebook.draft.get(PHOTO_DRAFT)) ?? []);
@@ -240,7 +240,7 @@ function asObservation(notebook, values, position, when) {
   if (set.lat_deg === undefined && fix) Object.assign(set, fixFields(fix));
   set.observed_at = new Date(when).toISOString().replace('.000Z', 'Z');
   if (survey?.reading_step_deg) set.reading_step_deg = survey.reading_step_deg;
-  return {...set, ...bearingFrame(spotOf(notebook, values, position), when, values.north)};
+  return {...set, ...bearingFrame(spotOf(notebook, values, position), when + notebook.clockOffMs(), values.north)};
 }
 
 /**

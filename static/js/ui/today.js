@@ -25,7 +25,7 @@ export function mountToday({main}, parts) {
   function update() {
     choice.show(whose);
     const zone = notebook.survey()?.time_zone;
-    const today = day(clock(), zone);
+    const today = day(clock() + notebook.clockOffMs(), zone);
     const rows = notebook.observations().filter((row) => row.observed_at && day(row.observed_at, zone) === today);
     rows.sort((a, b) => ((a.observed_at ?? '') < (b.observed_at ?? '') ? 1 : -1));
     const wanted = rows.filter((row) => whose === 'all' || row.madeBy === notebook.info.crew);
