@@ -5,7 +5,7 @@ BIN := $(VENV)/bin
 ONLY ?=
 
 .DEFAULT_GOAL := help
-.PHONY: help demo serve test lint types bench browser clean
+.PHONY: help demo serve test lint types bench faults browser clean
 
 help: ## list the commands
 	@grep -hE '^[a-z]+:.*## ' $(MAKEFILE_LIST) | sed -E 's/^([a-z]+):[^#]*## (.*)/  make \1\t\2/' | expand -t 16
@@ -31,6 +31,9 @@ types: $(VENV)/.tests tests/js/node_modules/.done ## types of Python and JavaScr
 
 bench: $(VENV)/.tests browser ## measure; writes bench.json (ONLY=group for one group)
 	$(BIN)/python -m tests.bench $(ONLY)
+
+faults: $(VENV)/.tests browser ## random schedules of every fault, the long form (about half an hour)
+	$(BIN)/python -m tests.faults
 
 browser: $(VENV)/.tests
 	@$(BIN)/python tests/browser/find.py --install
