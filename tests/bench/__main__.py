@@ -12,7 +12,7 @@ import time
 
 from tests.conftest import ROOT
 
-GROUPS = ("circular", "phone")
+GROUPS = ("circular", "handover", "phone")
 TARGET = ROOT / "bench.json"
 
 

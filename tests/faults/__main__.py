@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import argparse
 import itertools
+import logging
 import shutil
 import sys
 import tempfile
@@ -40,6 +41,7 @@ def main(arguments: list[str]) -> int:
     options.add_argument("--browser", type=int, default=100)
     options.add_argument("--kills", type=int, default=60)
     asked = options.parse_args(arguments)
+    logging.disable(logging.ERROR)  # stores stopped inside say so, thousands of times
     met: Counter[str] = Counter()
     folder = Path(tempfile.mkdtemp(prefix="ergbook-faults-"))
     begun = time.monotonic()
