@@ -40,7 +40,7 @@ def run(app: Any, settings: Any, lines: list[str]) -> None:
     from cheroot.wsgi import Server
 
     server = Server((settings.host, settings.port), app, numthreads=16, request_queue_size=128)
-    server.max_request_body_size = settings.request_bytes_max
+    server.max_request_body_size = max(settings.request_bytes_max, settings.notebook_bytes_max)
     if settings.tls_certificate:
         server.ssl_adapter = BuiltinSSLAdapter(str(settings.tls_certificate), str(settings.tls_key))
     try:

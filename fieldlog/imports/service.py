@@ -11,8 +11,10 @@ from typing import Any, Final
 from sqlalchemy import select
 
 from fieldlog.errors import Refusal
+from fieldlog.imports.accepting import NotebookPlan, accept, look, sentence
 from fieldlog.imports.found import Found, FoundTrack, ImportFileError, RefusedRow, Values
 from fieldlog.imports.gpx import read_gpx
+from fieldlog.imports.notebook import ENDING, read_notebook
 from fieldlog.imports.placing import Placement, place
 from fieldlog.imports.sites_csv import read_sites
 from fieldlog.sheet.schema import problems
@@ -20,6 +22,7 @@ from fieldlog.sheet.subjects import label_in
 from fieldlog.sheet.times import read_time
 from fieldlog.store.append import say
 from fieldlog.store.db import AnySession
+from fieldlog.store.photos import PhotoFolder
 from fieldlog.store.tables import crew, observations, tracks
 from fieldlog.surveys.service import crew_names, put_site, sites_of
 
@@ -56,11 +59,14 @@ class Plan:
     already: list[str] = field(default_factory=list)
     refused: list[RefusedRow] = field(default_factory=list)
     notes: list[str] = field(default_factory=list)
+    notebook: NotebookPlan | None = None
+    """What a phone's file brings, where the file is one."""
 
     @property
     def is_empty(self) -> bool:
         """Whether there is nothing to write."""
-        return not (self.sites or self.tracks or self.placements)
+        phones = self.notebook is not None and (self.notebook.fresh or self.notebook.photos)
+        return not (self.sites or self.tracks or self.placements or phones)
 
     @property
     def track_lines(self) -> list[TrackLine]:
@@ -73,6 +79,8 @@ class Plan:
     @property
     def sentence(self) -> str:
         """What would be written, in words."""
+        if self.notebook is not None:
+            return sentence(self.notebook)
         if self.is_empty:
             return "Nothing to add: all of it is here already." if self.already else "Nothing to add."
         counted = (
@@ -83,21 +91,20 @@ class Plan:
         return ", ".join(f"{n} {one if n == 1 else many}" for n, one, many in counted if n) + "."
 
 
-def preview(session: AnySession, survey: str, name: str, data: bytes, walker: str | None = None) -> Plan:
+def preview(
+    session: AnySession, survey: str, name: str, data: bytes, walker: str | None = None, *, folder: PhotoFolder
+) -> Plan:
     """What importing a file would do; nothing is written.
 
     `name` is the file's name (its ending says what it is), `walker` the crew record of whoever
-    carried the device: then only their observations are placed. Refusal for a file that cannot be
-    read; what is wrong in parts of it stands in the plan.
+    carried the device: then only their observations are placed. `folder` is where photos are kept.
+    Refusal for a file that cannot be read; what is wrong in parts of it stands in the plan.
     """
-    ending = PurePath(name).suffix.lower()
-    if ending not in READERS:
-        raise ImportFileError(
-            f"{ending or 'no ending'} is not imported", name, "Choose .gpx (waypoints, tracks) or .csv (sites)"
-        )
+    if _ending(name) == ENDING:
+        return Plan(notebook=look(session, survey, read_notebook(data), folder))
     if walker is not None and walker not in crew_names(session, survey):
         raise Refusal("this is nobody of the survey's crew", "Walked by")
-    found = READERS[ending](data)
+    found = READERS[_ending(name)](data)
     plan = Plan(refused=list(found.refused), notes=list(found.notes))
     _plan_sites(plan, found, sites_of(session, survey))
     _plan_tracks(plan, found, _held_tracks(session, survey), walker)
@@ -107,11 +114,27 @@ def preview(session: AnySession, survey: str, name: str, data: bytes, walker: st
     return plan
 
 
+def _ending(name: str) -> str:
+    ending = PurePath(name).suffix.lower()
+    if ending not in (*READERS, ENDING):
+        raise ImportFileError(
+            f"{ending or 'no ending'} is not imported", name,
+            f"Choose .gpx (waypoints, tracks), .csv (sites) or {ENDING} (a phone's file)",
+        )
+    return ending
+
+
 def confirm(
-    session: AnySession, survey: str, by: str, name: str, data: bytes, walker: str | None = None
+    session: AnySession, survey: str, by: str, name: str, data: bytes, walker: str | None = None, *,
+    folder: PhotoFolder, who: str,
 ) -> Plan:
-    """Write what `preview` shows, as it stands now. Inside `write()`. All of it or, on a Refusal, nothing."""
-    plan = preview(session, survey, name, data, walker)
+    """Write what `preview` shows, as it stands now. Inside `write()`. All of it or, on a Refusal, nothing.
+
+    `who` is the lead's name, for the audit line of a phone's file.
+    """
+    if _ending(name) == ENDING:
+        return Plan(notebook=accept(session, survey, by, who, read_notebook(data), folder))
+    plan = preview(session, survey, name, data, walker, folder=folder)
     for values in plan.sites:
         put_site(session, survey, by, values)
     for values in plan.tracks:

@@ -12,6 +12,7 @@ from fieldlog.imports import pending, service
 from fieldlog.imports.found import ImportFileError
 from fieldlog.people.access import callers
 from fieldlog.store.db import db
+from fieldlog.store.photos import PhotoFolder
 from fieldlog.store.transaction import write
 from fieldlog.surveys.service import crew_names, crew_of_lead, survey_row
 
@@ -33,9 +34,9 @@ def take(survey: str) -> Any:
     walker = request.form.get("walker") or None
     try:
         if chosen is None or not chosen.filename:
-            raise ImportFileError("no file was chosen", mend="Choose a .gpx or a .csv")
+            raise ImportFileError("no file was chosen", mend="Choose a .gpx, a .csv or a .ergbook")
         upload = pending.Upload(chosen.filename, walker, chosen.read())
-        service.preview(db.session, survey, upload.name, upload.data, walker)
+        service.preview(db.session, survey, upload.name, upload.data, walker, folder=_photos())
     except Refusal as problem:
         return _page(survey, problem), 422
     held = pending.keep(_folder(), survey, upload)
@@ -49,7 +50,7 @@ def preview(survey: str, upload: str) -> Any:
     row = survey_row(db.session, survey)
     try:
         file = pending.held(_folder(), survey, upload)
-        plan = service.preview(db.session, survey, file.name, file.data, file.walker)
+        plan = service.preview(db.session, survey, file.name, file.data, file.walker, folder=_photos())
     except Refusal as problem:
         return _page(survey, problem), 422
     names = crew_names(db.session, survey)
@@ -68,7 +69,9 @@ def confirm(survey: str, upload: str) -> Any:
         file = pending.held(_folder(), survey, upload)
         with write() as session:
             by = crew_of_lead(session, survey, g.lead.name)
-            plan = service.confirm(session, survey, by, file.name, file.data, file.walker)
+            plan = service.confirm(
+                session, survey, by, file.name, file.data, file.walker, folder=_photos(), who=g.lead.name
+            )
     except Refusal as problem:
         return _page(survey, problem), 422
     pending.drop(_folder(), survey, upload)
@@ -79,6 +82,10 @@ def _page(survey: str, problem: Refusal | None) -> str:
     return render_template(
         "desk/import.html", survey=survey_row(db.session, survey), crew=crew_names(db.session, survey), problem=problem
     )
+
+
+def _photos() -> PhotoFolder:
+    return PhotoFolder(Path(current_app.config["ERGBOOK"].data_dir) / "photos")
 
 
 def _folder() -> Path:

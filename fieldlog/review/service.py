@@ -84,7 +84,7 @@ class SiteSheet:
 class Change:
     """One entry of a record's history: who, when, and each field from what to what.
 
-    `at_base`: it was said at a desk, not on a phone.
+    `at_base`: it was said at a desk, not on a phone. `accepted_by`: who accepted it from a file, "" for nobody.
     """
 
     seq: int
@@ -94,6 +94,7 @@ class Change:
     at_base: bool
     made_at: datetime
     received_at: datetime
+    accepted_by: str
     fields: list[tuple[str, Any, Any]] = field(default_factory=list)
 
 
@@ -231,13 +232,14 @@ def history(session: AnySession, survey: str, record: str) -> list[Change]:
     if not numbered:
         raise ForeignStoreError("there is no such record in this survey")
     names = crew_names(session, survey)
-    received: dict[int, datetime] = dict(
-        session.execute(
-            select(LedgerEntry.seq, LedgerEntry.received_at).where(
+    received = {
+        seq: (at, names.get(by, by or ""))
+        for seq, at, by in session.execute(
+            select(LedgerEntry.seq, LedgerEntry.received_at, LedgerEntry.accepted_by).where(
                 LedgerEntry.survey == survey, LedgerEntry.record == record
             )
-        ).all()
-    )
+        )
+    }
     by_name = {entry.name: entry for _, entry in numbered}
     desk = session.scalar(select(SurveyCounter.store_device).where(SurveyCounter.survey == survey))
     changes = []
@@ -246,7 +248,7 @@ def history(session: AnySession, survey: str, record: str) -> list[Change]:
         by = entry.body["by"]
         changes.append(Change(
             seq=seq, n=entry.n, who=names.get(by, by), device=entry.device, at_base=entry.device == desk,
-            made_at=read_time(entry.body["made_at"]), received_at=received[seq], fields=fields,
+            made_at=read_time(entry.body["made_at"]), received_at=received[seq][0], accepted_by=received[seq][1], fields=fields,
         ))
     return changes
 

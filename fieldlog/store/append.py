@@ -109,6 +109,15 @@ def admit_survey(session: AnySession, survey: str) -> None:
         session.execute(insert(SurveyCounter).values(survey=survey, seq=0, store_device=names.new_device(), hlc=""))
 
 
+def hashes_of(session: AnySession, survey: str, device: str) -> dict[int, str]:
+    """n -> SHA-256 of every entry of a device that is here, in the ledger or set aside."""
+    held: dict[int, str] = {}
+    for table in (LedgerEntry, SetAside):
+        found = session.execute(select(table.n, table.sha256).where(table.survey == survey, table.device == device))
+        held.update((n, sha256) for n, sha256 in found)
+    return held
+
+
 def lock_survey(session: AnySession, survey: str) -> SurveyCounter:
     """Take the survey's lock until the transaction ends."""
     locked = session.execute(
@@ -122,11 +131,12 @@ def lock_survey(session: AnySession, survey: str) -> SurveyCounter:
 
 
 def append(
-    session: AnySession, survey: str, device: str, batch: Sequence[Prepared], *, received_at: datetime | None = None
+    session: AnySession, survey: str, device: str, batch: Sequence[Prepared], *, received_at: datetime | None = None,
+    accepted_by: str | None = None,
 ) -> tuple[list[Result], int]:
     """Append a device's consecutive entries; answers in order, and how far it is now received.
 
-    Inside `write()`. Repeating a batch changes nothing. GapError where the batch begins beyond
+    Inside `write()`. Repeating a batch changes nothing. `accepted_by`: who accepted it from a file. GapError where the batch begins beyond
     what has been received.
     """
     counter = lock_survey(session, survey)
@@ -163,7 +173,7 @@ def append(
             results.append(Result(item.n, "stored", seq))
     if aside:
         session.execute(insert(SetAside), aside)
-    _insert(session, survey, counter, fresh, now)
+    _insert(session, survey, counter, fresh, now, accepted_by)
     through = max([through, *(item.n for item in batch)])
     if known:
         known.received_through = through
@@ -174,7 +184,8 @@ def append(
 
 
 def _insert(
-    session: AnySession, survey: str, counter: SurveyCounter, fresh: list[tuple[int, Entry, str]], now: datetime
+    session: AnySession, survey: str, counter: SurveyCounter, fresh: list[tuple[int, Entry, str]], now: datetime,
+    accepted_by: str | None,
 ) -> None:
     if not fresh:
         return
@@ -182,6 +193,7 @@ def _insert(
         {
             "survey": survey, "seq": seq, "device": entry.device, "n": entry.n, "kind": entry.kind,
             "record": entry.record, "text": entry.text, "sha256": sha256, "received_at": now,
+            "accepted_by": accepted_by,
         }
         for seq, entry, sha256 in fresh
     ]

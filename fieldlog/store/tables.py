@@ -75,6 +75,8 @@ class LedgerEntry(Base):
     text: Mapped[str] = mapped_column(Text)
     sha256: Mapped[str] = mapped_column(String(64))
     received_at: Mapped[Any] = mapped_column(UtcTime)
+    accepted_by: Mapped[str | None] = mapped_column(String(31))
+    """Crew record of the lead who accepted it from a file; None where it came by hand-over."""
     __table_args__ = (UniqueConstraint("survey", "device", "n"), Index(None, "survey", "record"))
 
 

@@ -61,6 +61,8 @@ def _admit() -> Any:
         return None
     if "lead" in allowed and current_user.is_authenticated:
         g.lead = LeadCaller(current_user.lead, current_user.name)
+        if request.endpoint == "imports.take":  # a week's photos may be in it
+            request.max_content_length = current_app.config["ERGBOOK"].notebook_bytes_max
         return None
     if is_api():
         raise AccessError(401, "not-signed-in", "this needs a phone's token or a lead's session", "Join or sign in")

@@ -31,6 +31,11 @@ class Settings:
     photo_bytes_max: int = 16 * 1024 * 1024
 
     @property
+    def notebook_bytes_max(self) -> int:
+        """The largest file of a phone that a lead may upload."""
+        return 256 * 1024 * 1024
+
+    @property
     def request_bytes_max(self) -> int:
         """The largest request of all: a photo, and a little for its head."""
         return self.photo_bytes_max + 1024 * 1024

@@ -54,6 +54,17 @@ async function show(notebook) {
     await choose('');
   }
 
+  async function leaveSurvey() {
+    const refused = await notebook.whyStay();
+    if (refused) return refused;
+    frame.close();
+    hand.close();
+    await notebook.leave();
+    rememberSurvey('');
+    await choose('');
+    return '';
+  }
+
   frame.open({
     notebook,
     position,
@@ -67,6 +78,7 @@ async function show(notebook) {
     vibrate: (milliseconds) => void navigator.vibrate?.(milliseconds),
     go: frame.go,
     switchSurvey: () => void switchSurvey(),
+    leaveSurvey,
   });
   frame.go(hand.values().site ? 'reading' : 'place');
   notebook.handover.start();

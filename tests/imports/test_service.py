@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from pathlib import Path
 from typing import Any
 
 import pytest
@@ -13,6 +14,7 @@ from fieldlog.imports import placing, service
 from fieldlog.imports.found import ImportFileError
 from fieldlog.ledger.names import new_device
 from fieldlog.store.db import db
+from fieldlog.store.photos import PhotoFolder
 from fieldlog.store.rebuild import check
 from fieldlog.store.tables import LedgerEntry, observations, sites, tracks
 from fieldlog.store.transaction import write
@@ -20,6 +22,7 @@ from tests.factories import Survey, send
 from tests.imports import files
 
 GPX = files.HANDHELD.encode()
+NO_PHOTOS = PhotoFolder(Path("no-photos"))
 
 
 @pytest.fixture
@@ -33,7 +36,7 @@ def survey(app: Flask) -> Any:
 
 def run(survey: Survey, name: str, data: bytes, walker: str | None = None) -> service.Plan:
     with write() as session:
-        return service.confirm(session, survey.id, survey.lead, name, data, walker)
+        return service.confirm(session, survey.id, survey.lead, name, data, walker, folder=NO_PHOTOS, who="Lead")
 
 
 def entries() -> int:
@@ -42,7 +45,7 @@ def entries() -> int:
 
 def test_a_preview_writes_nothing(survey: Survey) -> None:
     before = entries()
-    plan = service.preview(db.session, survey.id, "walk.gpx", GPX)
+    plan = service.preview(db.session, survey.id, "walk.gpx", GPX, folder=NO_PHOTOS)
     db.session.rollback()
     assert entries() == before
     assert plan.sentence == "3 sites, 2 tracks, 3 observations placed along a track."
@@ -83,15 +86,15 @@ def test_a_name_at_another_place_is_refused_and_the_rest_goes_in(survey: Survey)
 def test_only_the_walkers_observations_are_placed(survey: Survey, app: Flask) -> None:
     with write() as session:
         other = service.say(session, survey.id, by=survey.lead, kind="crew", values={"name": "Somebody else"})
-    assert not service.preview(db.session, survey.id, "walk.gpx", GPX, other).placements
-    assert len(service.preview(db.session, survey.id, "walk.gpx", GPX, survey.lead).placements) == 3
+    assert not service.preview(db.session, survey.id, "walk.gpx", GPX, other, folder=NO_PHOTOS).placements
+    assert len(service.preview(db.session, survey.id, "walk.gpx", GPX, survey.lead, folder=NO_PHOTOS).placements) == 3
     with pytest.raises(Refusal, match="nobody"):
-        service.preview(db.session, survey.id, "walk.gpx", GPX, "no such record")
+        service.preview(db.session, survey.id, "walk.gpx", GPX, "no such record", folder=NO_PHOTOS)
 
 
 def test_a_long_gap_places_nothing_and_says_so(survey: Survey) -> None:
     long = files.HANDHELD.replace("05:07:00Z", "07:07:00Z").replace("09:37:00+04:30", "07:08:00Z")
-    plan = service.preview(db.session, survey.id, "walk.gpx", long.encode())
+    plan = service.preview(db.session, survey.id, "walk.gpx", long.encode(), folder=NO_PHOTOS)
     assert not plan.placements
     assert all("gap" in row.why for row in plan.refused)
 
@@ -105,4 +108,4 @@ def test_a_long_track_is_said_in_parts(survey: Survey) -> None:
 
 def test_a_file_of_another_kind_is_refused(survey: Survey) -> None:
     with pytest.raises(ImportFileError, match="not imported"):
-        service.preview(db.session, survey.id, "walk.fit", b"")
+        service.preview(db.session, survey.id, "walk.fit", b"", folder=NO_PHOTOS)

@@ -4,11 +4,13 @@ import {clockOffMs} from '../ledger/project.js';
 import {Replica} from '../ledger/replica.js';
 import {CONSTANTS} from '../sheet/declared.js';
 import {draftsOf} from '../store/drafts.js';
+import {forgetNotebook} from '../store/joined.js';
 import {keepLearnt, load} from '../store/load.js';
 import {keepPhoto} from '../store/photos.js';
 import {Problem} from '../store/problem.js';
 import {saveEntries} from '../store/save.js';
 import {StoreApi} from './api.js';
+import {isFiled, noteFiled, notebookFile} from './file.js';
 import {markJoined} from './join.js';
 import {Runner} from './runner.js';
 import {saidInSave} from './saying.js';
@@ -132,6 +134,39 @@ export class Notebook {
       setAside: CONSTANTS.phone_kinds.flatMap((kind) => this.replica.rows(kind)).reduce((sum, row) => sum + row.setAside.length, 0),
       fromNewerApp: this.replica.newer.size,
     };
+  }
+
+  /**
+   * All that this phone holds, as a file for the lead; `noteFiled` once it was saved.
+   * @returns {Promise<import('./file.js').NotebookFile>}
+   */
+  toFile() {
+    return notebookFile(this);
+  }
+
+  /** The file was saved. */
+  async noteFiled() {
+    await noteFiled(this);
+    this.#changed('handover');
+  }
+
+  /**
+   * What keeps this survey on the phone; '' where base has everything, or a file that was saved does.
+   * @returns {Promise<string>}
+   */
+  async whyStay() {
+    const {unsent, unsentPhotos, setAside} = this.counts();
+    if (!(unsent || unsentPhotos || setAside) || (await isFiled(this))) return '';
+    return 'Some of it is on this phone only. Hand over, or save everything to a file first.';
+  }
+
+  /**
+   * Take this survey off the phone for good; ask `whyStay` first.
+   * @returns {Promise<void>} rejects with a Problem
+   */
+  async leave() {
+    await this.close();
+    await forgetNotebook(this.deps, this.kept.info.survey);
   }
 
   /** How far this phone's clock is taken to be off, milliseconds: base's less its own. */

@@ -5,6 +5,7 @@
 
 import {Connection, notebookConnection} from './open.js';
 import {load} from './load.js';
+import {Problem, storeProblem} from './problem.js';
 
 /** @typedef {import('./deps.js').Deps} Deps */
 /** @typedef {{survey: string, name: string}} Joined */
@@ -49,6 +50,24 @@ export async function listJoined(deps) {
     if (kept?.info.isJoined) found.push({survey, name: kept.info.name});
   }
   return found.sort((a, b) => (a.name < b.name ? -1 : 1));
+}
+
+/**
+ * Delete a survey's notebook for good.
+ * @param {Deps} deps
+ * @param {string} survey
+ * @returns {Promise<void>} rejects with a Problem where another page holds it open
+ */
+export async function forgetNotebook(deps, survey) {
+  await new Promise((/** @type {(value: void) => void} */ resolve, reject) => {
+    const request = deps.indexedDB.deleteDatabase(`ergbook-${survey}`);
+    request.onsuccess = () => resolve();
+    request.onerror = () => reject(storeProblem(request.error));
+    request.onblocked = () => reject(new Problem('This survey is open in another page of this phone', '', 'Close the other page, then leave again.'));
+  });
+  await withIndex(deps, (index) => index.transact(['surveys'], 'readwrite', (transaction) => {
+    transaction.objectStore('surveys').delete(survey);
+  }, {strict: true}));
 }
 
 /**

@@ -5,6 +5,7 @@ import {chips} from './choice.js';
 import {el, fill, say} from './element.js';
 import {count, size, span} from './figures.js';
 import {THEMES} from './theme.js';
+import {wayOut} from './way_out.js';
 
 /** @typedef {import('./parts.js').Parts} Parts */
 
@@ -33,6 +34,7 @@ export function mountHandOver({main, dock, signal}, parts) {
     state,
     progress,
     problems,
+    wayOut(parts),
     storage,
     el('h2', {}, 'Look'),
     looks.element,

@@ -16,6 +16,7 @@
  * @property {(milliseconds: number) => void} vibrate
  * @property {(place: PlaceName, detail?: string) => void} go
  * @property {() => void} switchSurvey
+ * @property {() => Promise<string>} leaveSurvey why the survey is not taken off the phone; '' once it is gone
  */
 
 /** @typedef {'place' | 'reading' | 'finding' | 'hand_over' | 'today' | 'observation'} PlaceName */
