@@ -7,6 +7,7 @@ from marshmallow import EXCLUDE, Schema, fields, validate
 ENTRIES_MAX = 500
 BATCH_BYTES_MAX = 2 * 1024 * 1024
 ENTRY_BYTES_MAX = 128 * 1024
+PART_BYTES_MAX = 1024 * 1024
 
 
 class BatchSchema(Schema):
@@ -87,7 +88,8 @@ class ChangesSchema(StoreHeadSchema):
 
 
 class PhotoAnswerSchema(StoreHeadSchema):
-    """The store holds the photo whose bytes have this hash."""
+    """How much of the photo of this hash the store holds, and whether that is all of it."""
 
     sha256 = fields.String(required=True)
-    bytes = fields.Integer(required=True)
+    offset = fields.Integer(required=True)
+    complete = fields.Boolean(required=True)

@@ -14,6 +14,7 @@ from fieldlog.handover.schema import (
     BATCH_BYTES_MAX,
     ENTRIES_MAX,
     ENTRY_BYTES_MAX,
+    PART_BYTES_MAX,
     BatchAnswerSchema,
     BatchSchema,
     ChangesQuerySchema,
@@ -23,7 +24,7 @@ from fieldlog.handover.schema import (
 from fieldlog.people.access import callers
 from fieldlog.people.service import note_seen
 from fieldlog.store.db import db
-from fieldlog.store.photos import PhotoError, PhotoFolder, check_photo, media_type_of
+from fieldlog.store.photos import PhotoError, PhotoFolder, media_type_of
 from fieldlog.store.transaction import write
 
 blueprint = Blueprint("handover", __name__, url_prefix="/api/v1/surveys/<survey>")
@@ -76,37 +77,62 @@ def pull(survey: str) -> Any:
 @blueprint.route("/photos/<sha256>", methods=["HEAD", "GET"])
 @callers("phone", "lead")
 def photo(survey: str, sha256: str) -> Response:
-    """A kept photo; HEAD tells a phone whether it still has to be sent."""
+    """A kept photo; HEAD tells a phone how much of it has come."""
     if request.method == "HEAD":
         size = _photos().size(survey, sha256)
-        if size is None:
-            raise PhotoNotHereError("this photo is not at base", sha256)
-        return Response(status=200, headers={"Content-Length": str(size), **_store_headers()})
+        offset = _photos().offset(survey, sha256) if size is None else size
+        headers = {"Upload-Offset": str(offset), **_store_headers()}
+        return Response(status=404 if size is None else 200, headers=headers)
     data = _photos().read(survey, sha256)
     if data is None:
         raise PhotoNotHereError("this photo is not at base", sha256)
-    response = Response(data, content_type=media_type_of(data))
+    return _picture(data, media_type_of(data))
+
+
+@blueprint.get("/photos/<sha256>/small")
+@callers("phone", "lead")
+def small_photo(survey: str, sha256: str) -> Response:
+    """A kept photo's thumbnail."""
+    data = _photos().thumbnail(survey, sha256)
+    if data is None:
+        raise PhotoNotHereError("this photo is not at base", sha256)
+    return _picture(data, "image/jpeg")
+
+
+def _picture(data: bytes, media_type: str) -> Response:
+    """Named by its bytes, so it never changes."""
+    response = Response(data, content_type=media_type)
     response.headers["Cache-Control"] = "private, max-age=31536000, immutable"
     response.headers["Content-Disposition"] = "inline"
     return response
 
 
-@blueprint.put("/photos/<sha256>")
+@blueprint.patch("/photos/<sha256>")
 @callers("phone")
-def keep_photo(survey: str, sha256: str) -> Any:
-    """Take a photo whole: hash compared, decoded, synced to the disk, then confirmed."""
+def add_to_photo(survey: str, sha256: str) -> Any:
+    """Take the next part of a photo: synced to the disk, then answered with where it goes on.
+
+    The last part is answered once the whole has been hashed, decoded and put in its place.
+    """
+    whole, offset = _number("Upload-Length"), _number("Upload-Offset")
     limit = current_app.config["ERGBOOK"].photo_bytes_max
-    if (request.content_length or 0) > limit:
+    if whole > limit:
         raise PhotoTooLargeError(f"the photo is larger than {limit // (1024 * 1024)} MB", sha256)
+    if (request.content_length or 0) > PART_BYTES_MAX:
+        raise PhotoTooLargeError(f"a part has at most {PART_BYTES_MAX} bytes", sha256)
     folder = _photos()
     size = folder.size(survey, sha256)
-    status = 200
     if size is None:
-        data = request.get_data(cache=False)
-        check_photo(sha256, data)
-        folder.keep(survey, sha256, data)
-        size, status = len(data), 201
-    return jsonify(PhotoAnswerSchema().dump({**service.head(db.session), "sha256": sha256, "bytes": size})), status
+        size = folder.add(survey, sha256, offset, request.get_data(cache=False), whole=whole)
+    told = {**service.head(db.session), "sha256": sha256, "offset": size, "complete": size == whole}
+    return jsonify(PhotoAnswerSchema().dump(told))
+
+
+def _number(header: str) -> int:
+    text = request.headers.get(header, "")
+    if not text.isdecimal() or len(text) > 12:
+        raise BatchError(f"the header {header} is not a number of bytes", header)
+    return int(text)
 
 
 class PhotoNotHereError(PhotoError):

@@ -1,6 +1,9 @@
 """Photos, named by the SHA-256 of their bytes, in a folder: photos/SURVEY/ab/HASH.
 
-Look-ups never cross surveys: a hash known in one survey says nothing in another.
+They come in parts: what has come of one lies beside its place as HASH.part, and its length, after
+the bytes have been synced, is where the next part goes on. A whole one is hashed and decoded before
+it takes its place, with a thumbnail as HASH.small. Look-ups never cross surveys: a hash known in
+one survey says nothing in another.
 """
 
 from __future__ import annotations
@@ -10,6 +13,7 @@ import io
 import os
 import re
 import tempfile
+import threading
 from dataclasses import dataclass
 from pathlib import Path
 from typing import Protocol
@@ -23,9 +27,20 @@ PIXELS_MAX = 60_000_000
 FORMATS = {"JPEG": "image/jpeg", "PNG": "image/png", "WEBP": "image/webp"}
 THUMBNAIL_PX = 240
 
+_one_part = threading.Lock()
+"""Parts are added one at a time; two workers that add to one photo spoil it, which its hash then shows."""
+
 
 class PhotoError(Refusal, ValueError):
     """What was sent is not a photo that can be kept."""
+
+
+class WrongOffsetError(Refusal, ValueError):
+    """A part that does not begin where the last one ended."""
+
+    def __init__(self, offset: int) -> None:
+        super().__init__(f"the next part of this photo begins at byte {offset}", "Upload-Offset", "Send from there")
+        self.offset = offset
 
 
 class PhotoStore(Protocol):
@@ -33,9 +48,15 @@ class PhotoStore(Protocol):
 
     def size(self, survey: str, sha256: str) -> int | None: ...
 
+    def offset(self, survey: str, sha256: str) -> int: ...
+
+    def add(self, survey: str, sha256: str, offset: int, part: bytes, *, whole: int) -> int: ...
+
     def keep(self, survey: str, sha256: str, data: bytes) -> None: ...
 
     def read(self, survey: str, sha256: str) -> bytes | None: ...
+
+    def thumbnail(self, survey: str, sha256: str) -> bytes | None: ...
 
 
 @dataclass(frozen=True)
@@ -54,10 +75,46 @@ class PhotoFolder:
         path = self._path(survey, sha256)
         return path.stat().st_size if path.exists() else None
 
+    def offset(self, survey: str, sha256: str) -> int:
+        """How many bytes of a photo have come and are safe."""
+        part = self._path(survey, sha256).with_suffix(".part")
+        return part.stat().st_size if part.exists() else 0
+
+    def add(self, survey: str, sha256: str, offset: int, part: bytes, *, whole: int) -> int:
+        """Add a part of a photo of `whole` bytes; how many are here now. The last one makes it a kept photo.
+
+        WrongOffsetError where it does not go on where the last one ended. PhotoError where the whole
+        is no photo, or not the one of this hash: nothing of it is left then.
+        """
+        path = self._path(survey, sha256)
+        beside = path.with_suffix(".part")
+        with _one_part:
+            there = self.offset(survey, sha256)
+            if offset != there or offset + len(part) > whole:
+                raise WrongOffsetError(there)
+            path.parent.mkdir(parents=True, exist_ok=True)
+            with beside.open("ab") as out:
+                out.write(part)
+                out.flush()
+                os.fsync(out.fileno())
+            if offset + len(part) < whole:
+                return offset + len(part)
+            data = beside.read_bytes()
+            try:
+                check_photo(sha256, data)
+                self.keep(survey, sha256, data)
+            finally:
+                beside.unlink(missing_ok=True)
+        return whole
+
     def keep(self, survey: str, sha256: str, data: bytes) -> None:
-        """Keep a photo that has been checked: written beside, synced, then renamed into place."""
+        """Keep a photo that has been checked, and its thumbnail: written beside, synced, then renamed into place."""
         path = self._path(survey, sha256)
         path.parent.mkdir(parents=True, exist_ok=True)
+        self._put(path.with_suffix(".small"), small(data))
+        self._put(path, data)
+
+    def _put(self, path: Path, data: bytes) -> None:
         handle, beside = tempfile.mkstemp(dir=path.parent, prefix=".part-")
         try:
             with os.fdopen(handle, "wb") as out:
@@ -68,6 +125,14 @@ class PhotoFolder:
         except BaseException:
             Path(beside).unlink(missing_ok=True)
             raise
+
+    def thumbnail(self, survey: str, sha256: str) -> bytes | None:
+        """A small JPEG of a kept photo, None where it is not here."""
+        path = self._path(survey, sha256)
+        if not path.exists():
+            return None
+        beside = path.with_suffix(".small")
+        return beside.read_bytes() if beside.exists() else small(path.read_bytes())
 
     def read(self, survey: str, sha256: str) -> bytes | None:
         """The bytes of a kept photo, None where it is not here."""
@@ -104,11 +169,11 @@ def media_type_of(data: bytes) -> str:
     return FORMATS[name]
 
 
-def thumbnail(data: bytes) -> bytes:
+def small(data: bytes) -> bytes:
     """A small JPEG of a photo, long edge 240 px."""
     with Image.open(io.BytesIO(data)) as image:
-        small = ImageOps.exif_transpose(image).convert("RGB")
-    small.thumbnail((THUMBNAIL_PX, THUMBNAIL_PX))
+        made = ImageOps.exif_transpose(image).convert("RGB")
+    made.thumbnail((THUMBNAIL_PX, THUMBNAIL_PX))
     out = io.BytesIO()
-    small.save(out, "JPEG", quality=80)
+    made.save(out, "JPEG", quality=80)
     return out.getvalue()

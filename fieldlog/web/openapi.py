@@ -103,17 +103,22 @@ def description() -> dict[str, Any]:
             }
         },
     )
-    image = {"content": {"image/*": {"schema": {"type": "string", "format": "binary"}}}}
     spec.path(
         "/api/v1/surveys/{survey}/photos/{sha256}",
         operations={
             "head": {"parameters": photo, "security": either, "responses": _answers({200: None})},
             "get": {"parameters": photo, "security": either, "responses": _answers({200: None})},
-            "put": {
-                "parameters": photo, "security": phone, "requestBody": {"required": True, **image},
-                "responses": _answers({200: "PhotoAnswer", 201: "PhotoAnswer"}),
+            "patch": {
+                "parameters": [*photo, _parameter("Upload-Offset", "header", "integer"), _parameter("Upload-Length", "header", "integer")],
+                "security": phone,
+                "requestBody": {"required": True, "content": {"application/octet-stream": {"schema": {"type": "string", "format": "binary"}}}},
+                "responses": _answers({200: "PhotoAnswer"}),
             },
         },
+    )
+    spec.path(
+        "/api/v1/surveys/{survey}/photos/{sha256}/small",
+        operations={"get": {"parameters": photo, "security": either, "responses": _answers({200: None})}},
     )
     described: dict[str, Any] = spec.to_dict()
     return described

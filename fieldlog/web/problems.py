@@ -15,11 +15,13 @@ from fieldlog.handover.service import WrongStoreError
 from fieldlog.handover.views import BatchTooLargeError, PhotoNotHereError, PhotoTooLargeError
 from fieldlog.people.service import LinkError, SignInError
 from fieldlog.store.append import ForeignStoreError, GapError
+from fieldlog.store.photos import WrongOffsetError
 
 LOG: Final = logging.getLogger("fieldlog")
 
 STATUS: Final[dict[type[Refusal], int]] = {
     GapError: 409,
+    WrongOffsetError: 409,
     WrongStoreError: 409,
     ForeignStoreError: 404,
     LinkError: 410,
@@ -85,6 +87,8 @@ def set_up_problems(app: Flask) -> None:
         more: dict[str, Any] = {"detail": str(refusal), "where": refusal.where}
         if isinstance(refusal, GapError):
             more["received_through"] = refusal.received_through
+        if isinstance(refusal, WrongOffsetError):
+            more["offset"] = refusal.offset
         return answer(status_of(refusal), _kind_of(refusal), refusal.what, refusal.mend, **more)
 
     @app.errorhandler(CSRFError)

@@ -58,7 +58,7 @@ class Desert:
             self._hand_over()
         elif act == "fault":
             action = source.choice(FAULTS)
-            method, path = source.choice([("POST", r"/entries$"), ("GET", r"/changes$"), ("PUT", r"/photos/"), ("HEAD", r"/photos/")])
+            method, path = source.choice([("POST", r"/entries$"), ("GET", r"/changes$"), ("PATCH", r"/photos/"), ("HEAD", r"/photos/")])
             self.line.fault(action, method, path, share=source.random())
             self.met[f"browser: {action}"] += 1
             self._hand_over()

@@ -132,9 +132,11 @@ def a_photo(**size: int) -> bytes:
     return out.getvalue()
 
 
-def put(phone: PhoneClient, data: bytes, name: str = "") -> Any:
+def add(phone: PhoneClient, data: bytes, offset: int = 0, *, whole: int | None = None, name: str = "") -> Any:
+    """Send a part of a photo, by default all of it."""
     sha256 = name or hashlib.sha256(data).hexdigest()
-    return phone.client.put(f"/api/v1/surveys/{phone.survey}/photos/{sha256}", data=data, headers=phone.headers)
+    headers = {**phone.headers, "Upload-Offset": str(offset), "Upload-Length": str(len(data) if whole is None else whole)}
+    return phone.client.patch(f"/api/v1/surveys/{phone.survey}/photos/{sha256}", data=data, headers=headers)
 
 
 def test_a_photo_is_kept_once_and_comes_back_whole(base: Base) -> None:
@@ -142,13 +144,47 @@ def test_a_photo_is_kept_once_and_comes_back_whole(base: Base) -> None:
     sha256 = hashlib.sha256(data).hexdigest()
     url = f"/api/v1/surveys/{base.survey}/photos/{sha256}"
     assert phone.client.head(url, headers=phone.headers).status_code == 404
-    assert put(phone, data).status_code == 201
-    assert put(phone, data).status_code == 200
+    for _ in range(2):
+        told = add(phone, data)
+        assert told.status_code == 200
+        assert (told.get_json()["offset"], told.get_json()["complete"]) == (len(data), True)
     held = phone.client.head(url, headers=phone.headers)
     assert held.headers["Ergbook-Store"] == phone.head["store"]
-    assert int(held.headers["Content-Length"]) == len(data)
+    assert held.headers["Upload-Offset"] == str(len(data))
     assert phone.client.get(url, headers=phone.headers).data == data
-    assert base.signed_in().get(url).mimetype == "image/jpeg"
+    desk = base.signed_in()
+    assert desk.get(url).mimetype == "image/jpeg"
+    with Image.open(io.BytesIO(desk.get(f"{url}/small").data)) as small:
+        assert max(small.size) <= 240
+
+
+def test_a_photo_cut_at_any_byte_goes_on_from_there(base: Base) -> None:
+    phone = base.phone()
+    for cut in range(1, 60, 7):
+        data = a_photo(width=20 + cut)
+        sha256 = hashlib.sha256(data).hexdigest()
+        url = f"/api/v1/surveys/{base.survey}/photos/{sha256}"
+        assert add(phone, data[:cut], whole=len(data), name=sha256).get_json()["complete"] is False
+        there = phone.client.head(url, headers=phone.headers)
+        assert (there.status_code, there.headers["Upload-Offset"]) == (404, str(cut))
+        assert phone.client.get(url, headers=phone.headers).status_code == 404
+        wrong = add(phone, data[cut + 1 :], cut + 1, whole=len(data), name=sha256)
+        assert (wrong.status_code, wrong.get_json()["offset"]) == (409, cut)
+        again = add(phone, data[:cut], whole=len(data), name=sha256)
+        assert (again.status_code, again.get_json()["offset"]) == (409, cut)
+        assert add(phone, data[cut:], cut, whole=len(data), name=sha256).get_json()["complete"] is True
+        assert phone.client.get(url, headers=phone.headers).data == data
+
+
+def test_a_spoilt_part_is_found_at_the_end_and_the_photo_begins_anew(base: Base) -> None:
+    phone, data = base.phone(), a_photo()
+    sha256 = hashlib.sha256(data).hexdigest()
+    flipped = bytes([data[0] ^ 1]) + data[1:10]
+    add(phone, flipped, whole=len(data), name=sha256)
+    assert add(phone, data[10:], 10, whole=len(data), name=sha256).status_code == 422
+    head = phone.client.head(f"/api/v1/surveys/{base.survey}/photos/{sha256}", headers=phone.headers)
+    assert (head.status_code, head.headers["Upload-Offset"]) == (404, "0")
+    assert add(phone, data).get_json()["complete"] is True
 
 
 @pytest.mark.parametrize(
@@ -160,26 +196,29 @@ def test_a_photo_is_kept_once_and_comes_back_whole(base: Base) -> None:
         (a_photo(width=400, height=300)[:-200], "the photo is damaged and does not decode"),
     ],
 )
-def test_a_fake_or_cut_photo_is_refused_and_leaves_nothing(base: Base, data: bytes, told: str) -> None:
-    answer = put(base.phone(), data)
+def test_a_fake_photo_is_refused_and_leaves_nothing(base: Base, data: bytes, told: str) -> None:
+    answer = add(base.phone(), data)
     assert answer.status_code == 422
     assert answer.get_json()["title"] == told
-    assert not list((base.app.config["ERGBOOK"].data_dir / "photos").rglob("*.*"))
+    assert not [path for path in (base.app.config["ERGBOOK"].data_dir / "photos").rglob("*") if path.is_file()]
 
 
 def test_a_photo_under_a_wrong_hash_and_one_too_large_are_refused(base: Base) -> None:
     phone = base.phone()
-    assert "do not match" in put(phone, a_photo(), "0" * 64).get_json()["title"]
+    assert "do not match" in add(phone, a_photo(), name="0" * 64).get_json()["title"]
     limit = base.app.config["ERGBOOK"].photo_bytes_max
-    too_large = put(phone, b"\xff\xd8" + bytes(limit), "1" * 64)
+    too_large = add(phone, b"", whole=limit + 1, name="1" * 64)
     assert too_large.status_code == 413
     assert "larger than 16 MB" in too_large.get_json()["title"]
+    assert add(phone, bytes(1024 * 1024 + 1), whole=limit, name="1" * 64).status_code == 413
+    url = f"/api/v1/surveys/{base.survey}/photos/{'1' * 64}"
+    assert phone.client.patch(url, data=b"x", headers={**phone.headers, "Upload-Offset": "-1"}).status_code == 422
 
 
 def test_a_photo_of_one_survey_is_unknown_in_another(base: Base) -> None:
     data = a_photo()
     sha256 = hashlib.sha256(data).hexdigest()
-    put(base.phone(), data)
+    add(base.phone(), data)
     from tests.http.conftest import new_survey
 
     with base.app.app_context():

@@ -16,7 +16,8 @@ const TIMEOUT_MS = 30_000;
  * @typedef {object} Request
  * @property {string} [token]
  * @property {unknown} [json]
- * @property {ArrayBuffer} [bytes] a photo
+ * @property {ArrayBuffer} [bytes] part of a photo
+ * @property {Record<string, string>} [headers] beside the usual ones
  * @property {boolean} [gzip]
  * @property {number} [timeoutMs]
  * @property {AbortSignal} [signal]
@@ -52,12 +53,12 @@ export async function ask(deps, method, path, request = {}) {
  * @param {string} path
  * @param {Request} request
  */
-async function send(deps, method, path, {token, json, bytes, gzip, timeoutMs = TIMEOUT_MS, signal}) {
+async function send(deps, method, path, {token, json, bytes, gzip, headers: more = {}, timeoutMs = TIMEOUT_MS, signal}) {
   /** @type {Record<string, string>} */
-  const headers = {Accept: 'application/json'};
+  const headers = {Accept: 'application/json', ...more};
   if (token) headers.Authorization = `Bearer ${token}`;
   if (json !== undefined) headers['Content-Type'] = 'application/json';
-  if (bytes) headers['Content-Type'] = 'image/jpeg';
+  if (bytes) headers['Content-Type'] = 'application/octet-stream';
   /** @type {BodyInit | undefined} */
   let body = bytes ?? (json === undefined ? undefined : JSON.stringify(json));
   if (gzip && typeof body === 'string' && 'CompressionStream' in globalThis) {
@@ -150,26 +151,29 @@ export class StoreApi {
   }
 
   /**
-   * Whether base holds a photo. Only an answer that names the store in its headers counts: any
+   * How much of a photo base holds. Only an answer that names the store in its headers counts: any
    * proxy can answer 200.
    * @param {string} sha256
-   * @returns {Promise<boolean>}
+   * @returns {Promise<{isComplete: boolean, offset: number}>}
    */
-  async hasPhoto(sha256) {
+  async photoAt(sha256) {
     const {survey, token, store} = this.info();
     const path = `surveys/${survey}/photos/${sha256}`;
     const {response} = await send(this.deps, 'HEAD', path, {token, signal: this.signal});
-    return response.status === 200 && response.headers.get('Ergbook-Store') === store;
+    if (response.headers.get('Ergbook-Store') !== store) return {isComplete: false, offset: 0};
+    return {isComplete: response.status === 200, offset: Number(response.headers.get('Upload-Offset')) || 0};
   }
 
   /**
-   * A photo's bytes from base.
+   * A photo's bytes from base, or its thumbnail's.
    * @param {string} sha256
+   * @param {boolean} [isSmall]
    * @returns {Promise<Blob>}
    */
-  async photo(sha256) {
+  async photo(sha256, isSmall = false) {
     const {survey, token} = this.info();
-    const response = await this.deps.fetch(`${this.deps.base}/api/v1/surveys/${survey}/photos/${sha256}`, {
+    const path = `surveys/${survey}/photos/${sha256}${isSmall ? '/small' : ''}`;
+    const response = await this.deps.fetch(`${this.deps.base}/api/v1/${path}`, {
       headers: {Authorization: `Bearer ${token}`}, redirect: 'error', credentials: 'omit',
     }).catch(() => null);
     if (!response?.ok) throw new NoConnection('the photo cannot be had from base now');

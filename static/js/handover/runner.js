@@ -8,7 +8,7 @@ import {keepLearnt} from '../store/load.js';
 import {Problem} from '../store/problem.js';
 import {waitMillis} from './backoff.js';
 import {NewEpoch, NoConnection, Refused, Stopped, WrongStore} from './failures.js';
-import {sendPhotos} from './photos.js';
+import {PartSize, sendPhotos} from './photos.js';
 import {pull} from './pull.js';
 import {BatchSize, push} from './push.js';
 
@@ -55,6 +55,7 @@ export class Runner {
     this.desk = desk;
     this.onChange = onChange;
     this.size = new BatchSize();
+    this.partSize = new PartSize();
     this.failures = 0;
     this.isStarted = false;
     this.isAgain = false;
@@ -169,7 +170,7 @@ export class Runner {
     }
     await push(desk, this.size);
     await pull(desk);
-    await sendPhotos(desk);
+    await sendPhotos(desk, this.partSize);
   }
 
   /**

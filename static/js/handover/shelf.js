@@ -65,7 +65,7 @@ export class PhotoShelf {
         ...row,
         isSent: kept?.isSent ?? true,
         problem: kept?.problem ?? '',
-        thumbnailUrl: async () => urlOf(kept?.thumbnail ?? (await this.#whole(row.sha256))),
+        thumbnailUrl: async () => urlOf(kept?.thumbnail ?? (await this.notebook.api.photo(row.sha256, true))),
         fullUrl: async () => urlOf(await this.#whole(row.sha256)),
       };
     });

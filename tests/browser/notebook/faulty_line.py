@@ -138,7 +138,7 @@ class _Handler(BaseHTTPRequestHandler):
             with suppress(OSError):
                 self.connection.shutdown(socket.SHUT_RDWR)
 
-    do_GET = do_POST = do_PUT = do_HEAD = handle_request  # noqa: N815  the standard library's names
+    do_GET = do_POST = do_PATCH = do_HEAD = handle_request  # noqa: N815  the standard library's names
 
     def _ask(self, body: bytes) -> tuple[int, dict[str, str], bytes]:
         store = http.client.HTTPConnection("127.0.0.1", self.line.store_port, timeout=60)

@@ -459,14 +459,14 @@ def test_a_number_that_this_phone_never_gave_stops_it(
 def test_a_photo_goes_once_after_its_entry(joined: NotebookPage, line: Line, store: StoreOfOneSurvey) -> None:
     joined.save_photo(store.site, 10)
     assert joined.counts()["unsentPhotos"] == 1
-    line.fault("swallow", "PUT", r"/photos/")
+    line.fault("swallow", "PATCH", r"/photos/")
     state = joined.hand_over()
     assert (state["phase"], state["photosSent"], state["photosOf"]) == ("offline", 0, 1)
     state = joined.hand_over()
     assert (state["phase"], state["photosSent"]) == ("idle", 1)
-    assert len(line.requests("PUT", r"/photos/")) == 1
+    assert len(line.requests("PATCH", r"/photos/")) == 1
     joined.hand_over()
-    assert len(line.requests("PUT", r"/photos/")) == 1
+    assert len(line.requests("PATCH", r"/photos/")) == 1
     assert joined.counts()["unsentPhotos"] == 0
     [photo] = store.photos()
     assert joined.run(
@@ -482,7 +482,7 @@ def test_a_photo_that_a_stranger_says_is_there_is_sent_all_the_same(
     joined.save_photo(store.site, 10)
     line.fault("portal", "HEAD", r"/photos/")
     assert joined.hand_over()["phase"] == "idle"
-    assert len(line.requests("PUT", r"/photos/")) == 1
+    assert len(line.requests("PATCH", r"/photos/")) == 1
 
 
 def test_a_photo_that_base_refuses_is_marked_and_holds_up_no_other(
@@ -500,7 +500,7 @@ def test_a_photo_that_base_refuses_is_marked_and_holds_up_no_other(
     [photo] = joined.run("(record) => book.photos(record).map(({isSent, problem}) => ({isSent, problem}))", fake)
     assert not photo["isSent"]
     assert photo["problem"]
-    assert len(line.requests("PUT", r"/photos/")) == 2
+    assert len(line.requests("PATCH", r"/photos/")) == 2
 
 
 def test_the_queue_empties_by_itself_once_the_line_is_healed(profile: Profile, line: Line, store: StoreOfOneSurvey) -> None:
