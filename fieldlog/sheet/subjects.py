@@ -47,6 +47,10 @@ SURVEY: Final = Sheet(
               help="Fields of the observation that this survey switches on."),
         Field(name="note", type="text", max_length=2000, label="Note", group="survey",
               help="What the survey is for, hazards, agreements."),
+        Field(name="photo_long_edge_px", type="integer", unit="px", minimum=400, maximum=8000, label="Photos' long edge", group="survey",
+              help="Photos are made no larger than this on the phone; 1600 where nothing is said."),
+        Field(name="photo_original", type="flag", label="Keep the original photos", group="survey",
+              help="Phones keep and hand over the camera's own file: ten times the bytes."),
         *(
             Field(name=f"{ASKS}{name}", type=kind, unit=unit, minimum=0, maximum=maximum, decimals=2 if kind == "number" else None,
                   label=label, group="questions", help=explained)

@@ -22,7 +22,7 @@ from fieldlog.surveys.forms import values_from
 
 blueprint = Blueprint("surveys", __name__, url_prefix="/surveys")
 
-SURVEY_FIELDS = ("name", "time_zone", "target_half_width_deg", "fewest_dunes", "reading_step_deg", "note")
+SURVEY_FIELDS = ("name", "time_zone", "target_half_width_deg", "fewest_dunes", "reading_step_deg", "photo_long_edge_px", "photo_original", "note")
 ASKING_FIELDS = tuple(field.name for field in SURVEY.fields if field.group == "questions")
 SITE_FIELDS = ("name", "lat_deg", "lon_deg", "radius_m", "dune_pattern", "dune_rule", "target_half_width_deg",
                "expected_facing_deg", "note")

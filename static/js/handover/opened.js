@@ -6,7 +6,7 @@ import {CONSTANTS} from '../sheet/declared.js';
 import {draftsOf} from '../store/drafts.js';
 import {forgetNotebook} from '../store/joined.js';
 import {keepLearnt, load} from '../store/load.js';
-import {keepPhoto} from '../store/photos.js';
+import {freePhotos, keepPhoto} from '../store/photos.js';
 import {Problem} from '../store/problem.js';
 import {saveEntries} from '../store/save.js';
 import {StoreApi} from './api.js';
@@ -167,6 +167,17 @@ export class Notebook {
   async leave() {
     await this.close();
     await forgetNotebook(this.deps, this.kept.info.survey);
+  }
+
+  /** Bytes that `freePhotos` would free. */
+  freeableBytes() {
+    return this.shelf.freeable;
+  }
+
+  /** Take photos off the phone that base holds; thumbnails stay. */
+  async freePhotos() {
+    this.shelf.add(await freePhotos(this.connection));
+    this.#changed('rows');
   }
 
   /** How far this phone's clock is taken to be off, milliseconds: base's less its own. */

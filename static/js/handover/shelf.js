@@ -53,6 +53,11 @@ export class PhotoShelf {
       .sort((a, b) => a.size - b.size);
   }
 
+  /** Bytes of photos that base holds too. */
+  get freeable() {
+    return [...this.bySha256.values()].filter((photo) => photo.isSent && !photo.isFreed).reduce((sum, photo) => sum + photo.size, 0);
+  }
+
   /**
    * @param {string} observation
    * @returns {PhotoShown[]}

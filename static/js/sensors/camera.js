@@ -1,6 +1,7 @@
 /** Photos as the notebook keeps them: turned upright, no larger than needed, JPEG, with a thumbnail. */
 
-const LONGEST_PX = 1600;
+const LONGEST_PX = 1600; // where the survey says nothing
+const KEPT_AS_IT_IS = ['image/jpeg', 'image/png', 'image/webp'];
 const THUMBNAIL_PX = 240;
 
 /**
@@ -13,13 +14,16 @@ const THUMBNAIL_PX = 240;
 
 /**
  * @param {Blob} file what the camera or the gallery gave
+ * @param {{longEdgePx?: number | null, isOriginal?: boolean | null}} [wanted] as the survey sets it
  * @returns {Promise<Taken>} throws an Error in words where the file is no picture
  */
-export async function readPhoto(file) {
+export async function readPhoto(file, {longEdgePx, isOriginal} = {}) {
   const picture = await createImageBitmap(file, {imageOrientation: 'from-image'}).catch(() => null);
   if (!picture) throw new Error('This file is not a picture that the phone can read. Take the photo again.');
   try {
-    const large = await asJpeg(picture, LONGEST_PX, 0.85);
+    const large = isOriginal && KEPT_AS_IT_IS.includes(file.type)
+      ? {bytes: await file.arrayBuffer(), width: picture.width, height: picture.height}
+      : await asJpeg(picture, longEdgePx ?? LONGEST_PX, 0.85);
     const small = await asJpeg(picture, THUMBNAIL_PX, 0.7);
     return {bytes: large.bytes, width: large.width, height: large.height, thumbnail: small.bytes};
   } finally {

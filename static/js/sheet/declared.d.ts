@@ -53,6 +53,8 @@ export interface SurveyRow {
   reading_step_deg: number | null;
   optional_fields: string[] | null;
   note: string | null;
+  photo_long_edge_px: number | null;
+  photo_original: boolean | null;
   ask_square_deg: number | null;
   ask_steepest_deg: number | null;
   ask_gentlest_deg: number | null;

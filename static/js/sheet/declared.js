@@ -164,6 +164,50 @@ export const SHEETS = {
     "retired": false
    },
    {
+    "name": "photo_long_edge_px",
+    "type": "integer",
+    "label": "Photos' long edge",
+    "help": "Photos are made no larger than this on the phone; 1600 where nothing is said.",
+    "group": "survey",
+    "unit": "px",
+    "minimum": 400,
+    "maximum": 8000,
+    "decimals": null,
+    "vocabulary": null,
+    "refers_to": null,
+    "max_length": 500,
+    "required": false,
+    "measure": false,
+    "carries": "",
+    "optional": false,
+    "derived_from": [],
+    "asked": true,
+    "clocked": false,
+    "retired": false
+   },
+   {
+    "name": "photo_original",
+    "type": "flag",
+    "label": "Keep the original photos",
+    "help": "Phones keep and hand over the camera's own file: ten times the bytes.",
+    "group": "survey",
+    "unit": "",
+    "minimum": null,
+    "maximum": null,
+    "decimals": null,
+    "vocabulary": null,
+    "refers_to": null,
+    "max_length": 500,
+    "required": false,
+    "measure": false,
+    "carries": "",
+    "optional": false,
+    "derived_from": [],
+    "asked": true,
+    "clocked": false,
+    "retired": false
+   },
+   {
     "name": "ask_square_deg",
     "type": "number",
     "label": "Off square",
@@ -2910,5 +2954,5 @@ export const CONSTANTS = {
   "Decisions that can hurt someone rest with local codes and licensed practitioners."
  ],
  "clock_off_ms": 60000,
- "sheet_version": "27a6ef92678d"
+ "sheet_version": "b84c9103a0bb"
 };

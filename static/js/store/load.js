@@ -29,6 +29,7 @@ import {whenAll} from './open.js';
  * @property {ArrayBuffer} thumbnail
  * @property {boolean} isSent base has confirmed its hash
  * @property {string} problem why base refused it
+ * @property {boolean} [isFreed] base holds it, the phone only its thumbnail
  */
 
 /**

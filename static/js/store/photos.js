@@ -23,7 +23,7 @@ export async function keepPhoto(connection, deps, bytes, thumbnail) {
     const photos = transaction.objectStore('photos');
     const known = photos.get(sha256);
     known.onsuccess = () => {
-      const row = known.result ?? {sha256, size: bytes.byteLength, thumbnail, isSent: false, problem: ''};
+      const row = {...(known.result ?? {sha256, size: bytes.byteLength, thumbnail, isSent: false, problem: ''}), isFreed: false};
       photos.put(row);
       transaction.objectStore('photo_bytes').put(bytes, sha256);
       done(row);
@@ -44,6 +44,26 @@ export function photoBytes(connection, sha256) {
     const found = transaction.objectStore('photo_bytes').get(sha256);
     found.onsuccess = () => done(found.result);
   });
+}
+
+/**
+ * Take the full size of photos off the phone that base has confirmed; their thumbnails stay.
+ * @param {Connection} connection
+ * @returns {Promise<PhotoKept[]>} those that were freed
+ */
+export function freePhotos(connection) {
+  return connection.transact(['photos', 'photo_bytes'], 'readwrite', (transaction, done) => {
+    const photos = transaction.objectStore('photos');
+    const all = photos.getAll();
+    all.onsuccess = () => {
+      const freed = all.result.filter((photo) => photo.isSent && !photo.isFreed).map((photo) => ({...photo, isFreed: true}));
+      for (const photo of freed) {
+        photos.put(photo);
+        transaction.objectStore('photo_bytes').delete(photo.sha256);
+      }
+      done(freed);
+    };
+  }, {strict: true});
 }
 
 /**

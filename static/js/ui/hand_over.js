@@ -10,6 +10,8 @@ import {wayOut} from './way_out.js';
 /** @typedef {import('./parts.js').Parts} Parts */
 
 const OLD_MS = 12 * 3600_000;
+const SHORT_BYTES = 200e6;
+const SHORT_SHARE = 0.8;
 
 /** @type {import('./parts.js').Mount} */
 export function mountHandOver({main, dock, signal}, parts) {
@@ -78,12 +80,16 @@ export function mountHandOver({main, dock, signal}, parts) {
     const estimate = (await manager?.estimate?.()) ?? {};
     if (signal.aborted) return;
     const free = (estimate.quota ?? 0) - (estimate.usage ?? 0);
+    const isShort = estimate.quota !== undefined && (free < SHORT_BYTES || (estimate.usage ?? 0) > SHORT_SHARE * estimate.quota);
+    const freeable = notebook.freeableBytes();
     fill(
       storage,
       el('h2', {}, 'Kept on this phone'),
       el('p', {}, isKept ? 'The browser has promised not to clear this notebook.' : 'The browser may clear this notebook when the phone runs out of space.'),
       !isKept && el('button', {type: 'button', class: 'wide', onclick: () => void manager?.persist?.().then(showStorage)}, 'Ask the browser to keep it'),
       !isKept && el('p', {class: 'help'}, 'Installing Ergbook on the home screen helps. A hand-over is the only other copy.'),
+      isShort && problem('Little space is left on this phone.', 'Free photos that base holds, or delete other things: a full phone cannot save.'),
+      freeable > 0 && el('button', {type: 'button', class: 'wide', onclick: () => void notebook.freePhotos().then(showStorage)}, `Free ${size(freeable)}: photos that base holds`),
       estimate.quota !== undefined && el('p', {class: 'help'}, `${size(estimate.usage ?? 0)} used, ${size(free)} free for it.`),
       el('p', {class: 'help'}, shell.offline.get() ? 'Opens without a network.' : 'Does not open without a network yet: stay connected until this line changes.'),
     );

@@ -7,9 +7,10 @@ import {el, fill, say} from './element.js';
  * @param {object} deps
  * @param {() => import('../sensors/camera.js').Taken[]} deps.photos
  * @param {(photos: import('../sensors/camera.js').Taken[]) => Promise<void>} deps.change
+ * @param {() => {longEdgePx?: number | null, isOriginal?: boolean | null}} deps.wanted how the survey wants photos
  * @param {AbortSignal} deps.signal
  */
-export function photoStrip({photos, change, signal}) {
+export function photoStrip({photos, change, wanted, signal}) {
   const thumbnails = el('div', {class: 'thumbnails'});
   const message = el('p', {class: 'problem', role: 'alert', hidden: true});
   const input = el('input', {
@@ -31,7 +32,7 @@ export function photoStrip({photos, change, signal}) {
     message.hidden = true;
     label.setAttribute('aria-busy', 'true');
     try {
-      await change([...photos(), await readPhoto(file)]);
+      await change([...photos(), await readPhoto(file, wanted())]);
     } catch (error) {
       say(message, error instanceof Error ? error.message : String(error));
       message.hidden = false;

@@ -33,7 +33,7 @@ export function mountReading({main, dock, signal}, parts) {
     scroller: main,
     signal,
   });
-  const strip = photoStrip({photos: hand.photos, change: hand.setPhotos, signal});
+  const strip = photoStrip({photos: hand.photos, change: hand.setPhotos, wanted: () => photosWanted(notebook), signal});
   const last = el('section', {class: 'last', 'aria-label': 'Last readings here'});
   const nextDune = el('button', {type: 'button', class: 'next_dune', onclick: hand.nextDune}, 'Next dune');
   const bar = saveBar({save, undo: hand.undo, beside: nextDune, signal});
@@ -109,4 +109,10 @@ export function fixSentence({position, hand}) {
   if (!fix || age === null || status === 'waiting' && age > 20_000) return 'Waiting for a fix. Saving does not wait.';
   const old = age > 3000 ? `, ${span(age)} old` : '';
   return `Fix ±${metres(fix.accuracy_m)}, ${count(fix.fixes_n, 'fix', 'fixes')}${fix.fixes_n > 1 ? ' averaged' : ''}${old}.`;
+}
+
+/** @param {import('./parts.js').Notebook} notebook */
+function photosWanted(notebook) {
+  const survey = notebook.survey();
+  return {longEdgePx: survey?.photo_long_edge_px, isOriginal: survey?.photo_original};
 }
