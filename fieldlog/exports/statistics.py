@@ -59,11 +59,15 @@ def site_statistics(rows: SurveyRows) -> Iterator[tuple[Row, Row]]:
     readings: dict[str, list[Row]] = defaultdict(list)
     for row in rows.stream("observation"):
         readings[row["site"]].append({name: row[name] for name in _USED})
+    same: dict[str, list[tuple[str, str]]] = defaultdict(list)
+    for row in rows.stream("same_dune"):
+        if not row["crossed_out"]:
+            same[row["site"]].append((row["dune"], row["other"]))
     for site in rows.stream("site"):
         if site["crossed_out"]:
             continue
         for measure in MEASURES:
-            for index, result in enumerate(results(rows.survey, site, readings[site["record"]], measure)):
+            for index, result in enumerate(results(rows.survey, site, readings[site["record"]], measure, same[site["record"]])):
                 yield site, _row(site, result, main=index == 0)
 
 

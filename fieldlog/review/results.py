@@ -68,11 +68,14 @@ def step_of(rows: Sequence[Mapping[str, Any]], records: set[str]) -> float | Non
     return max(steps, default=None)
 
 
-def results(survey: Mapping[str, Any], site: Mapping[str, Any], rows: Sequence[Mapping[str, Any]], measure: Measure) -> list[Result]:
-    """The site's samples of a measure, the default one first; empty where nothing was read."""
+def results(survey: Mapping[str, Any], site: Mapping[str, Any], rows: Sequence[Mapping[str, Any]], measure: Measure, same: Sequence[tuple[str, str]] = ()) -> list[Result]:
+    """The site's samples of a measure, the default one first; empty where nothing was read.
+
+    `same`: pairs of dunes that a lead has called one.
+    """
     found = []
     target = target_of(survey, site)
-    for sample in samples(rows, measure.column):
+    for sample in samples(rows, measure.column, same):
         summary = summarise(
             sample.angles,
             bedforms=sample.bedforms if any(name is not None for name in sample.bedforms) else None,

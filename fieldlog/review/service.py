@@ -16,12 +16,13 @@ from fieldlog.ledger.entry import Entry
 from fieldlog.review.results import MEASURES, Measure, Result, more_needed, results
 from fieldlog.sheet.check import questions
 from fieldlog.sheet.question import Question, thresholds_of
+from fieldlog.sheet.sample import dune
 from fieldlog.sheet.subjects import label_in
 from fieldlog.sheet.times import read_time
 from fieldlog.store.append import ForeignStoreError, say
 from fieldlog.store.db import AnySession
 from fieldlog.store.projection import numbered_entries_of
-from fieldlog.store.tables import LedgerEntry, SurveyCounter, TwoVersions, observations, photos
+from fieldlog.store.tables import LedgerEntry, SurveyCounter, TwoVersions, observations, photos, same_dunes
 from fieldlog.surveys.service import Row, crew_names, site_row, sites_of, survey_row
 
 
@@ -77,6 +78,8 @@ class SiteSheet:
     two_versions: dict[str, list[str]]
     own_versions: dict[str, list[VersionLine]]
     photos: dict[str, list[Row]]
+    dunes: list[DuneLine]
+    same_dunes: list[Row]
     measures: tuple[Measure, ...] = MEASURES
 
 
@@ -117,6 +120,7 @@ def day_sheet(session: AnySession, survey: str, *, day: str = "", member: str = 
     for row in rows:
         by_site[row["site"]].append(row)
     all_sites = sites_of(session, survey)
+    same = dune_pairs(session, survey)
     site_of = {row["record"]: row["site"] for row in rows}
     asked = Counter(site_of[question.record] for question in questions(rows, sites=all_sites, thresholds=thresholds_of(head), time_zone=zone))
     doubtful = _two_versions_by_site(session, survey, site_of)
@@ -132,8 +136,8 @@ def day_sheet(session: AnySession, survey: str, *, day: str = "", member: str = 
         ]
         lines.append(SiteLine(
             site=site,
-            chosen={m.column: _first(results(head, site, chosen, m)) for m in MEASURES},
-            so_far={m.column: _first(results(head, site, everything, m)) for m in MEASURES},
+            chosen={m.column: _first(results(head, site, chosen, m, same[site["record"]])) for m in MEASURES},
+            so_far={m.column: _first(results(head, site, everything, m, same[site["record"]])) for m in MEASURES},
             readings_chosen=sum(not row["crossed_out"] for row in chosen),
             readings=sum(not row["crossed_out"] for row in everything),
             questions=asked[site["record"]],
@@ -209,9 +213,63 @@ def site_sheet(session: AnySession, survey: str, record: str) -> SiteSheet:
             doubtful[name].append(fieldname)
     return SiteSheet(
         head, site, crew_names(session, survey), rows,
-        {m.column: results(head, site, rows, m) for m in MEASURES},
+        {m.column: results(head, site, rows, m, dune_pairs(session, survey)[record]) for m in MEASURES},
         asked, doubtful, versions_of_record(session, survey, record), photos_of(session, survey, records),
+        dunes_of(session, survey, record, rows), _same_rows(session, survey, record),
     )
+
+
+@dataclass(frozen=True)
+class DuneLine:
+    """A dune as one device numbered it: `name` is device/number, `who` read on it, how often."""
+
+    name: str
+    number: int
+    who: str
+    readings: int
+
+
+def dunes_of(session: AnySession, survey: str, site: str, rows: Sequence[Row]) -> list[DuneLine]:
+    """The dunes of a site as its phones numbered them; empty where only one phone did."""
+    names = crew_names(session, survey)
+    counted: Counter[str] = Counter()
+    first: dict[str, Row] = {}
+    for row in rows:
+        name = dune(row)
+        if name and not row["crossed_out"]:
+            counted[name] += 1
+            first.setdefault(name, row)
+    if len({name.partition("/")[0] for name in counted}) < 2:
+        return []
+    lines = [DuneLine(name, row["bedform"], names.get(str(row["made_by"])) or str(row["made_by"]), counted[name]) for name, row in first.items()]
+    return sorted(lines, key=lambda line: (line.number, line.who))
+
+
+def dune_pairs(session: AnySession, survey: str) -> dict[str, list[tuple[str, str]]]:
+    """Site -> pairs of dunes that a lead has called one."""
+    found: dict[str, list[tuple[str, str]]] = defaultdict(list)
+    for row in _same_rows(session, survey):
+        if not row["crossed_out"]:
+            found[row["site"]].append((row["dune"], row["other"]))
+    return found
+
+
+def _same_rows(session: AnySession, survey: str, site: str | None = None) -> list[Row]:
+    wanted = [same_dunes.c.survey == survey, *([] if site is None else [same_dunes.c.site == site])]
+    return [dict(row) for row in session.execute(select(same_dunes).where(*wanted).order_by(same_dunes.c.first_seq)).mappings()]
+
+
+def call_one_dune(session: AnySession, survey: str, by: str, site: str, one: str, other: str) -> str:
+    """Say that two phones' dunes are one; the record, which can be crossed out. Inside `write()`."""
+    known = {line.name for line in dunes_of(session, survey, site, _observations(session, survey, observations.c.site == site))}
+    if one == other or not {one, other} <= known:
+        raise Refusal("choose two different dunes of this site", "One dune")
+    return say(session, survey, by=by, kind="same_dune", values={"site": site, "dune": one, "other": other})
+
+
+def part_dunes(session: AnySession, survey: str, by: str, record: str, reason: str | None) -> None:
+    """Take back that two dunes are one, with a reason, or, without one, say it again. Inside `write()`."""
+    say(session, survey, by=by, kind="same_dune", values={"crossed_out": reason}, record=record)
 
 
 def photos_of(session: AnySession, survey: str, records: set[str]) -> dict[str, list[Row]]:

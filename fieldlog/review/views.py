@@ -67,6 +67,20 @@ def observation(survey: str, record: str) -> str:
     )
 
 
+@blueprint.post("/sites/<record>/dunes")
+@callers("lead")
+def one_dune(survey: str, record: str) -> Any:
+    """Two phones' dunes are one; or, with `same`, that is taken back or said again."""
+    same = request.form.get("same")
+    with write() as session:
+        by = crew_of_lead(session, survey, g.lead.name)
+        if same:
+            service.part_dunes(session, survey, by, same, request.form.get("reason", "").strip() or None)
+        else:
+            service.call_one_dune(session, survey, by, record, request.form.get("dune", ""), request.form.get("other", ""))
+    return redirect(url_for("review.site", survey=survey, record=record, _anchor="dunes"))
+
+
 @blueprint.post("/records/<record>/choose")
 @callers("lead")
 def choose(survey: str, record: str) -> Any:

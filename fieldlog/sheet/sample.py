@@ -28,12 +28,16 @@ class Sample:
     records: tuple[str, ...]
 
 
-def samples(rows: Iterable[Mapping[str, Any]], measure: str) -> list[Sample]:
+def samples(
+    rows: Iterable[Mapping[str, Any]], measure: str, same: Iterable[tuple[str, str]] = ()
+) -> list[Sample]:
     """The samples among `rows` (of one site), the largest first; the first is the site's default.
 
     `measure` is a derived bearing, such as "slip_face_deg" or "crest_deg". Samples of one size keep
-    the order in which their first readings stand in `rows`. No usable row: an empty list.
+    the order in which their first readings stand in `rows`. `same`: pairs of dunes that a lead has
+    called one. No usable row: an empty list.
     """
+    called = one_name(same)
     groups: dict[tuple[str | None, str | None, str | None], list[Mapping[str, Any]]] = {}
     for row in rows:
         if counts(row) and row.get(measure) is not None:
@@ -42,12 +46,22 @@ def samples(rows: Iterable[Mapping[str, Any]], measure: str) -> list[Sample]:
         Sample(
             *group,
             angles=tuple(float(row[measure]) for row in members),
-            bedforms=tuple(dune(row) for row in members),
+            bedforms=tuple(called.get(name, name) if (name := dune(row)) else None for row in members),
             records=tuple(row["record"] for row in members),
         )
         for group, members in groups.items()
     ]
     return sorted(found, key=lambda sample: -len(sample.angles))
+
+
+def one_name(same: Iterable[tuple[str, str]]) -> dict[str, str]:
+    """Dune -> the one name under which it and all dunes that are the same are counted."""
+    called: dict[str, str] = {}
+    for pair in same:
+        one, other = (called.get(name, name) for name in pair)
+        kept, dropped = sorted((one, other))
+        called = {name: kept if to == dropped else to for name, to in called.items()} | {pair[0]: kept, pair[1]: kept, dropped: kept}
+    return called
 
 
 def counts(row: Mapping[str, Any]) -> bool:
@@ -59,7 +73,7 @@ def dune(row: Mapping[str, Any]) -> str | None:
     """The dune of an observation, named by the device that numbered it and its number.
 
     Two phones number their dunes without seeing each other, so dune 3 of one is not dune 3 of the
-    other until a lead says so. Valid within one site.
+    other until a lead says so (`same` of `samples`). Valid within one site.
     """
     number = row.get("bedform")
     return None if number is None else f"{device(row)}/{number:g}"

@@ -136,7 +136,22 @@ TRACK: Final = Sheet(
     ),
 )
 
-SHEETS: Final = {sheet.kind: sheet for sheet in (SURVEY, CREW, SITE, OBSERVATION, PHOTO, TRACK)}
+SAME_DUNE: Final = Sheet(
+    kind="same_dune",
+    label="One dune",
+    fields=(
+        Field(name="site", type="reference", refers_to="site", label="Site", group="same_dune", required=True,
+              help="The site on which the dune lies."),
+        Field(name="dune", type="text", max_length=40, label="Dune", group="same_dune", required=True,
+              help="The device that numbered it and its number, as device/3."),
+        Field(name="other", type="text", max_length=40, label="The same dune", group="same_dune", required=True,
+              help="What another device called it."),
+        Field(name="crossed_out", type="text", max_length=200, label="Crossed out because", group="same_dune",
+              help="The reason; empty while the two are one."),
+    ),
+)
+
+SHEETS: Final = {sheet.kind: sheet for sheet in (SURVEY, CREW, SITE, OBSERVATION, PHOTO, TRACK, SAME_DUNE)}
 
 PHONE_KINDS: Final = frozenset({"observation", "photo", "track"})
 """What a phone may say; the rest is the lead's."""

@@ -55,6 +55,7 @@ TABLE: dict[str, tuple[Any, ...]] = {
     "review.site": LEAD,
     "review.observation": LEAD,
     "review.choose": LEAD,
+    "review.one_dune": LEAD,
     "exports.page": LEAD,
     "exports.file": LEAD,
     "imports.page": LEAD,

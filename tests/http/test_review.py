@@ -206,6 +206,30 @@ def test_cross_out_against_edit_is_chosen_too(base: Base, desk: FlaskClient) -> 
         assert db.session.execute(select(observations.c.crossed_out, observations.c.slip_face_deg)).one() == (None, 300)
 
 
+def test_dunes_of_two_phones_are_two_until_the_lead_says_they_are_one(base: Base, desk: FlaskClient) -> None:
+    one, other = Notebook(base, "Ysolde"), Notebook(base, "Samir")
+    for i, face in enumerate(FACES):
+        (one if i % 2 else other).read(face, dune=i // 2 + 1)
+    address = f"/surveys/{base.survey}/sites/{base.site}"
+    page = desk.get(address).get_data(as_text=True)
+    assert "10 readings on 10 dunes" in page
+    said = {"csrf_token": csrf(page), "dune": f"{one.phone.device}/1", "other": f"{other.phone.device}/1"}
+    assert desk.post(f"{address}/dunes", data=said).status_code == 302
+    merged = desk.get(address).get_data(as_text=True)
+    assert "10 readings on 9 dunes" in merged
+    assert "are one dune" in plain(merged)
+    export = desk.get(f"/surveys/{base.survey}/day").get_data(as_text=True)
+    assert "10 readings on 9 dunes" in export
+    same = re.search(r'name="same" value="([^"]+)"', merged)
+    assert same
+    desk.post(f"{address}/dunes", data={"csrf_token": csrf(page), "same": same[1], "reason": "200 m apart"})
+    assert "10 readings on 10 dunes" in desk.get(address).get_data(as_text=True)
+    wrong = desk.post(f"{address}/dunes", data={**said, "other": said["dune"]})
+    assert wrong.status_code == 422
+    with base.app.app_context():
+        assert list(check(db.session)) == []
+
+
 def test_what_people_write_stays_text(base: Base, desk: FlaskClient) -> None:
     nasty = "<script>alert(1)</script> \u0631\u0645\u0644"
     notebook = Notebook(base, nasty)

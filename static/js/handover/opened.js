@@ -180,6 +180,17 @@ export class Notebook {
     this.#changed('rows');
   }
 
+  /**
+   * Pairs of dunes of a site that a lead has called one.
+   * @param {string} site
+   * @returns {[string, string][]}
+   */
+  sameDunes(site) {
+    return this.replica.rows('same_dune')
+      .filter((row) => row.site === site && !row.crossed_out)
+      .map((row) => [String(row.dune), String(row.other)]);
+  }
+
   /** How far this phone's clock is taken to be off, milliseconds: base's less its own. */
   clockOffMs() {
     return clockOffMs(this.kept.offsetMs);

@@ -178,3 +178,11 @@ export interface TrackRow {
   points: [number, number, number | null, string | null][] | null;
   crossed_out: string | null;
 }
+
+export interface Same_duneRow {
+  record: string;
+  site: string | null;
+  dune: string | null;
+  other: string | null;
+  crossed_out: string | null;
+}

@@ -2367,6 +2367,101 @@ export const SHEETS = {
     "retired": false
    }
   ]
+ },
+ "same_dune": {
+  "kind": "same_dune",
+  "label": "One dune",
+  "groups": {},
+  "fields": [
+   {
+    "name": "site",
+    "type": "reference",
+    "label": "Site",
+    "help": "The site on which the dune lies.",
+    "group": "same_dune",
+    "unit": "",
+    "minimum": null,
+    "maximum": null,
+    "decimals": null,
+    "vocabulary": null,
+    "refers_to": "site",
+    "max_length": 500,
+    "required": true,
+    "measure": false,
+    "carries": "",
+    "optional": false,
+    "derived_from": [],
+    "asked": true,
+    "clocked": false,
+    "retired": false
+   },
+   {
+    "name": "dune",
+    "type": "text",
+    "label": "Dune",
+    "help": "The device that numbered it and its number, as device/3.",
+    "group": "same_dune",
+    "unit": "",
+    "minimum": null,
+    "maximum": null,
+    "decimals": null,
+    "vocabulary": null,
+    "refers_to": null,
+    "max_length": 40,
+    "required": true,
+    "measure": false,
+    "carries": "",
+    "optional": false,
+    "derived_from": [],
+    "asked": true,
+    "clocked": false,
+    "retired": false
+   },
+   {
+    "name": "other",
+    "type": "text",
+    "label": "The same dune",
+    "help": "What another device called it.",
+    "group": "same_dune",
+    "unit": "",
+    "minimum": null,
+    "maximum": null,
+    "decimals": null,
+    "vocabulary": null,
+    "refers_to": null,
+    "max_length": 40,
+    "required": true,
+    "measure": false,
+    "carries": "",
+    "optional": false,
+    "derived_from": [],
+    "asked": true,
+    "clocked": false,
+    "retired": false
+   },
+   {
+    "name": "crossed_out",
+    "type": "text",
+    "label": "Crossed out because",
+    "help": "The reason; empty while the two are one.",
+    "group": "same_dune",
+    "unit": "",
+    "minimum": null,
+    "maximum": null,
+    "decimals": null,
+    "vocabulary": null,
+    "refers_to": null,
+    "max_length": 200,
+    "required": false,
+    "measure": false,
+    "carries": "",
+    "optional": false,
+    "derived_from": [],
+    "asked": true,
+    "clocked": false,
+    "retired": false
+   }
+  ]
  }
 };
 
@@ -2954,5 +3049,5 @@ export const CONSTANTS = {
   "Decisions that can hurt someone rest with local codes and licensed practitioners."
  ],
  "clock_off_ms": 60000,
- "sheet_version": "b84c9103a0bb"
+ "sheet_version": "b7452593be44"
 };

@@ -15,9 +15,11 @@
  * Samples of one size keep the order in which their first readings stand in `rows`.
  * @param {Iterable<Row>} rows
  * @param {string} measure a derived bearing, such as "slip_face_deg" or "crest_deg"
+ * @param {Iterable<[string, string]>} [same] pairs of dunes that a lead has called one
  * @returns {Sample[]}
  */
-export function samples(rows, measure) {
+export function samples(rows, measure, same = []) {
+  const called = oneName(same);
   /** @type {Map<string, Sample>} */
   const groups = new Map();
   for (const row of rows) {
@@ -28,10 +30,27 @@ export function samples(rows, measure) {
     const sample = groups.get(key) ?? { order, face, dune_type: duneType, angles: [], bedforms: [], records: [] };
     groups.set(key, sample);
     sample.angles.push(angle);
-    sample.bedforms.push(dune(row));
+    const name = dune(row);
+    sample.bedforms.push(name === null ? null : called.get(name) ?? name);
     sample.records.push(String(row.record));
   }
   return [...groups.values()].sort((a, b) => b.angles.length - a.angles.length);
+}
+
+/**
+ * Dune -> the one name under which it and all dunes that are the same are counted.
+ * @param {Iterable<[string, string]>} same
+ * @returns {Map<string, string>}
+ */
+export function oneName(same) {
+  /** @type {Map<string, string>} */
+  const called = new Map();
+  for (const pair of same) {
+    const [kept, dropped] = pair.map((name) => called.get(name) ?? name).sort();
+    for (const [name, to] of called) if (to === dropped) called.set(name, kept);
+    for (const name of [...pair, dropped]) called.set(name, kept);
+  }
+  return called;
 }
 
 /**

@@ -42,7 +42,7 @@ export function mountFinding({main}, parts) {
     which.show(measure.field);
     if (!site) return fill(body, el('p', {class: 'empty'}, 'Choose a site to see what its readings show.'));
     const rows = notebook.observations({site});
-    const found = samples(/** @type {any[]} */ (rows), measure.field);
+    const found = samples(/** @type {any[]} */ (rows), measure.field, notebook.sameDunes(site));
     const drawn = found[Math.min(chosen, found.length - 1)];
     fill(
       body,
