@@ -51,16 +51,28 @@ def main(arguments: list[str] | None = None) -> Any:
         code = cli.main(args=arguments, prog_name="ergbook", standalone_mode=False)
     except click.exceptions.Abort:
         sys.exit(1)
-    except click.ClickException as error:
+    except click.exceptions.NoArgsIsHelpError as error:
         error.show()
-        sys.exit(2 if isinstance(error, click.UsageError) else 1)
-    except Refusal as refusal:
-        click.echo(f"ergbook: {refusal}", err=True)
         sys.exit(2)
+    except click.UsageError as error:
+        called = error.ctx.command_path if error.ctx else "ergbook"
+        _say(f"{error.format_message().rstrip('.')}. Try '{called} --help'")
+        sys.exit(2)
+    except click.ClickException as error:
+        _say(error.format_message())
+        sys.exit(1)
+    except Refusal as refusal:
+        _say(str(refusal))
+        sys.exit(1 if isinstance(refusal, OSError) else 2)
     except OSError as error:
-        click.echo(f"ergbook: {error}", err=True)
+        _say(str(error))
         sys.exit(1)
     sys.exit(code if isinstance(code, int) else 0)
+
+
+def _say(error: str) -> None:
+    """An error is one line."""
+    click.echo(f"ergbook: {' '.join(error.split())}", err=True)
 
 
 if __name__ == "__main__":

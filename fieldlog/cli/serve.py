@@ -3,11 +3,14 @@
 from __future__ import annotations
 
 import signal
+import ssl
 import sys
 from types import FrameType
 from typing import Any
 
 import click
+
+from fieldlog.errors import Refusal
 
 
 class _Stop(KeyboardInterrupt):
@@ -42,7 +45,12 @@ def run(app: Any, settings: Any, lines: list[str]) -> None:
     server = Server((settings.host, settings.port), app, numthreads=16, request_queue_size=128)
     server.max_request_body_size = max(settings.request_bytes_max, settings.notebook_bytes_max)
     if settings.tls_certificate:
-        server.ssl_adapter = BuiltinSSLAdapter(str(settings.tls_certificate), str(settings.tls_key))
+        try:
+            server.ssl_adapter = BuiltinSSLAdapter(str(settings.tls_certificate), str(settings.tls_key))
+        except ssl.SSLError as error:
+            raise Refusal(
+                "they are not a certificate and its key", "ERGBOOK_TLS_CERTIFICATE, ERGBOOK_TLS_KEY", "Give PEM files"
+            ) from error
     try:
         server.prepare()
     except OSError as error:

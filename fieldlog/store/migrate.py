@@ -8,11 +8,18 @@ from alembic import command
 from alembic.autogenerate import compare_metadata
 from alembic.config import Config
 from alembic.runtime.migration import MigrationContext
-from sqlalchemy import Connection, Engine, create_engine
+from alembic.script import ScriptDirectory
+from sqlalchemy import Connection, Engine, create_engine, make_url
+from sqlalchemy.exc import ArgumentError, DBAPIError
 
+from fieldlog.errors import Refusal
 from fieldlog.store.db import Base, engine_url, set_up_engine
 
 FOLDER = Path(__file__).resolve().parent / "migrations"
+
+
+class StoreError(Refusal, OSError):
+    """A database that cannot be opened, or not by this version."""
 
 
 def configuration(url: str) -> Config:
@@ -24,10 +31,26 @@ def configuration(url: str) -> Config:
 
 
 def upgrade(url: str, revision: str = "head") -> bool:
-    """Run all migrations that the database has not seen; whether one that held something was changed."""
-    before = _revision(url)
-    command.upgrade(configuration(url), revision)
+    """Run all migrations that the database has not seen; whether one that held something was changed.
+
+    Refusal of what is no address; StoreError where there is no such database, or a later version of the program has changed it.
+    """
+    try:
+        before = _revision(url)
+    except (ArgumentError, ValueError) as error:  # a port that is no number is a ValueError
+        raise Refusal("it is not the address of a database", "ERGBOOK_DATABASE_URL", "Write postgresql://user@host/name") from error
+    except DBAPIError as error:
+        why = str(error.orig).splitlines()[0]
+        raise StoreError(f"the database cannot be opened ({why})", _shown(url), "ERGBOOK_DATABASE_URL names it") from error
+    config = configuration(url)
+    if before not in {None, *(script.revision for script in ScriptDirectory.from_config(config).walk_revisions())}:
+        raise StoreError(f"a later version of Ergbook has changed it ({before})", _shown(url), "Install that version")
+    command.upgrade(config, revision)
     return before is not None and before != _revision(url)
+
+
+def _shown(url: str) -> str:
+    return make_url(url).render_as_string(hide_password=True)
 
 
 def downgrade(url: str, revision: str) -> None:

@@ -11,6 +11,7 @@ from typing import Final
 from fieldlog.errors import Refusal
 
 PREFIX: Final = "ERGBOOK_"
+DATABASES: Final = ("sqlite:///", "postgres://", "postgresql://", "postgresql+psycopg://")
 
 
 class SettingsError(Refusal, ValueError):
@@ -60,9 +61,11 @@ class Settings:
             return found.get(PREFIX + name, "").strip() or default
 
         data_dir = Path(text("DATA_DIR", "ergbook-data")).absolute()
+        if data_dir.exists() and not data_dir.is_dir():
+            raise SettingsError(f"{data_dir} is not a folder", PREFIX + "DATA_DIR")
         settings = cls(
             data_dir=data_dir,
-            database_url=text("DATABASE_URL", f"sqlite:///{data_dir / 'ergbook.sqlite'}"),
+            database_url=_database(text("DATABASE_URL", f"sqlite:///{data_dir / 'ergbook.sqlite'}")),
             host=host or text("HOST", "127.0.0.1"),
             port=port or _whole("PORT", text("PORT", "8421"), 1, 65535),
             public_url=text("PUBLIC_URL"),
@@ -76,6 +79,15 @@ class Settings:
             limit = _whole("PHOTO_MEGABYTES", megabytes, 1, 100)
             settings = replace(settings, photo_bytes_max=limit * 1024 * 1024)
         return settings
+
+
+def _database(url: str) -> str:
+    if not url.startswith(DATABASES):
+        raise SettingsError(
+            f"{url.partition(':')[0]!r} is no kind of database known here", PREFIX + "DATABASE_URL",
+            "Write postgresql://user@host/name or sqlite:///path/to/file",
+        )
+    return url
 
 
 def _whole(name: str, text: str, low: int, high: int) -> int:

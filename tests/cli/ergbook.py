@@ -21,7 +21,6 @@ def ergbook(*arguments: str, given: str = "", data_dir: Path | None = None, **en
 def refused(done: subprocess.CompletedProcess[str], code: int) -> str:
     """The one line of an error, its exit code held."""
     assert done.returncode == code, done.stdout + done.stderr
-    assert "Traceback" not in done.stderr
-    lines = done.stderr.strip().splitlines()
-    assert lines
-    return lines[-1]
+    (line,) = done.stderr.splitlines()
+    assert line.startswith("ergbook: ")
+    return line
