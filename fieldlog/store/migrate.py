@@ -67,7 +67,18 @@ def _revision(url: str) -> str | None:
 
 
 def write_migration(url: str, message: str) -> None:
-    """Write a migration, numbered on, from what the models say and an up-to-date database does not have."""
+    """Write a migration, numbered on, from what the models say and an up-to-date database does not have.
+
+    Refusal where that is nothing, or nothing is said of it.
+    """
+    if not message.strip():
+        raise Refusal("a migration says what it adds", "MESSAGE")
+    engine = engine_for(url)
+    with engine.connect() as connection:
+        new = difference(connection)
+    engine.dispose()
+    if not new:
+        raise Refusal("the migrations have all that the sheets and models have", mend="Edit those first")
     number = 1 + len(list((FOLDER / "versions").glob("[0-9]*.py")))
     command.revision(configuration(url), message=message, autogenerate=True, rev_id=f"{number:04d}")
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from flask import Flask
-from sqlalchemy import ForeignKeyConstraint, func, inspect, select
+from sqlalchemy import ForeignKeyConstraint, func, inspect, select, text
 
 from fieldlog.ledger.names import new_device
 from fieldlog.people import models as _people_models  # noqa: F401  its tables belong to the metadata
@@ -24,6 +24,17 @@ def test_nothing_separates_the_models_from_a_migrated_database(database_url: str
     engine = engine_for(database_url)
     with engine.connect() as connection:
         assert difference(connection) == []
+    engine.dispose()
+
+
+def test_a_difference_is_seen(database_url: str) -> None:
+    upgrade(database_url)
+    engine = engine_for(database_url)
+    with engine.begin() as connection:
+        connection.execute(text("ALTER TABLE site DROP COLUMN note"))
+        connection.execute(text("DROP INDEX ix_photo_survey_sha256"))
+    with engine.connect() as connection:
+        assert sorted(kind for kind, *_ in difference(connection)) == ["add_column", "add_index"]
     engine.dispose()
 
 
