@@ -18,11 +18,9 @@ def demo(load_only: bool, port: int | None) -> None:
     Starting it again goes on with what is there.
     """
     import segno
-    from sqlalchemy import select
 
     from fieldlog.cli.serve import run
-    from fieldlog.people.models import Lead
-    from fieldlog.people.service import add_lead, make_joining_code, sign_in_link
+    from fieldlog.people.service import add_lead, lead_named, make_joining_code, sign_in_link
     from fieldlog.store.photos import PhotoFolder
     from fieldlog.store.transaction import write
     from fieldlog.surveys.ledger_file import load_ledger
@@ -39,7 +37,7 @@ def demo(load_only: bool, port: int | None) -> None:
         if load_only:
             return
         with write() as session:
-            lead = session.scalar(select(Lead).where(Lead.name == LEAD)) or add_lead(session, LEAD, None)
+            lead = lead_named(session, LEAD) or add_lead(session, LEAD, None)
             token = sign_in_link(session, lead.id)
             code = make_joining_code(session, loaded.survey, secret=str(app.secret_key), who=LEAD, hours=24)
     link = f"{settings.address}/phone/#join={code}"

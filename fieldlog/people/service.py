@@ -140,6 +140,12 @@ def spend_link(session: AnySession, token: str, *, name: str = "", password: str
 # Leads
 
 
+def lead_named(session: AnySession, name: str) -> Lead | None:
+    """The lead of this name, None where there is none."""
+    found: Lead | None = session.scalar(select(Lead).where(Lead.name == name))
+    return found
+
+
 def add_lead(session: AnySession, name: str, password: str | None) -> Lead:
     """A new lead. `password` None: signs in by one-time links only. Inside `write()`."""
     name = name.strip()
@@ -147,7 +153,7 @@ def add_lead(session: AnySession, name: str, password: str | None) -> Lead:
         raise Refusal("a name has 1 to 80 characters", "name")
     if password is not None and len(password) < PASSWORD_LENGTH:
         raise Refusal(f"a password has at least {PASSWORD_LENGTH} characters", "password", "Several words do well")
-    if session.scalar(select(Lead.id).where(Lead.name == name)):
+    if lead_named(session, name):
         raise Refusal(f"there is a lead called {name} already", "name")
     lead = Lead(
         name=name,

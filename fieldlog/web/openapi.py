@@ -7,33 +7,15 @@ from typing import Any
 
 from apispec import APISpec
 from apispec.ext.marshmallow import MarshmallowPlugin
-from marshmallow import Schema, fields
 
 from fieldlog import __version__
 from fieldlog.handover import schema as handover
 from fieldlog.people import schema as people
 from fieldlog.sheet.schema import schema_for
 from fieldlog.sheet.subjects import SHEETS
+from fieldlog.web.schema import HealthSchema, ProblemSchema
 
 JSON = "application/json"
-
-
-class ProblemSchema(Schema):
-    """RFC 9457 problem details, with how to mend it."""
-
-    type = fields.String(required=True)
-    title = fields.String(required=True)
-    status = fields.Integer(required=True)
-    detail = fields.String()
-    where = fields.String()
-    mend = fields.String()
-
-
-class HealthSchema(handover.StoreHeadSchema):
-    """The store answers."""
-
-    status = fields.String(required=True)
-    app = fields.String(required=True)
 
 
 def _body(name: str) -> dict[str, Any]:
