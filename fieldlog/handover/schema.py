@@ -34,6 +34,7 @@ class EntryResultSchema(Schema):
     status = fields.String(required=True, validate=validate.OneOf(["stored", "already", "set_aside", "forked"]))
     seq = fields.Integer()
     problem = fields.String()
+    count = fields.Integer(metadata={"description": "So many in a row: n and seq go on by one"})
 
 
 class LimitsSchema(Schema):
@@ -66,6 +67,7 @@ class ChangeSchema(Schema):
     device = fields.String(required=True)
     n = fields.Integer(required=True)
     text = fields.String()
+    count = fields.Integer(metadata={"description": "So many own entries in a row: seq and n go on by one"})
 
 
 class ChangesQuerySchema(Schema):

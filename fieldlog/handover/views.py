@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 import zlib
 from typing import Any
 
@@ -10,6 +11,8 @@ from marshmallow import ValidationError
 
 from fieldlog.errors import Refusal
 from fieldlog.handover import service
+from fieldlog.handover.columns import COLUMNS_TYPE, from_columns
+from fieldlog.handover.runs import in_runs
 from fieldlog.handover.schema import (
     BATCH_BYTES_MAX,
     ENTRIES_MAX,
@@ -51,6 +54,7 @@ def push(survey: str) -> Any:
     answers = [
         {key: value for key, value in vars(result).items() if value not in (None, "")} for result in results
     ]
+    answers = in_runs(answers, ("n", "seq"))
     limits = {"entries": ENTRIES_MAX, "bytes": BATCH_BYTES_MAX}
     return jsonify(BatchAnswerSchema().dump({**head, "received_through": through, "results": answers, "limits": limits}))
 
@@ -71,6 +75,7 @@ def pull(survey: str) -> Any:
             entry["text"] = text
         entries.append(entry)
     head = service.head(db.session)
+    entries = in_runs(entries, ("n", "seq"))
     return jsonify(ChangesSchema().dump({**head, "entries": entries, "through": found.through, "last": found.last}))
 
 
@@ -160,11 +165,13 @@ def _batch() -> dict[str, Any]:
     if request.headers.get("Content-Encoding", "").lower() == "gzip":
         data = _unpacked(data)
     try:
-        batch: dict[str, Any] = BatchSchema().loads(data.decode("utf-8"))
+        text = data.decode("utf-8")
+        in_columns = request.mimetype == COLUMNS_TYPE
+        batch: dict[str, Any] = BatchSchema().load(from_columns(text, BATCH_BYTES_MAX) if in_columns else json.loads(text))
     except ValidationError as error:
         raise BatchError(f"the batch is wrong: {error.messages}", mend="Update the phone's app") from error
     except ValueError as error:
-        raise BatchError("the batch is not JSON", mend="Send it again") from error
+        raise BatchError(f"the batch is neither JSON nor columns ({error})", mend="Send it again") from error
     return batch
 
 

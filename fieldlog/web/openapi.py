@@ -10,6 +10,7 @@ from apispec.ext.marshmallow import MarshmallowPlugin
 
 from fieldlog import __version__
 from fieldlog.handover import schema as handover
+from fieldlog.handover.columns import COLUMNS_TYPE
 from fieldlog.people import schema as people
 from fieldlog.sheet.schema import schema_for
 from fieldlog.sheet.subjects import SHEETS
@@ -66,11 +67,13 @@ def description() -> dict[str, Any]:
         "/api/v1/joining",
         operations={"post": {"requestBody": _body("Join"), "responses": _answers({201: "JoinAnswer"})}},
     )
+    batch = _body("Batch")
+    batch["content"][COLUMNS_TYPE] = {"schema": {"type": "string", "description": "The same in columns: fieldlog/handover/columns.py"}}
     spec.path(
         "/api/v1/surveys/{survey}/entries",
         operations={
             "post": {
-                "parameters": survey, "security": phone, "requestBody": _body("Batch"),
+                "parameters": survey, "security": phone, "requestBody": batch,
                 "responses": _answers({200: "BatchAnswer"}),
             }
         },

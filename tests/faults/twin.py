@@ -113,7 +113,7 @@ class Twin:
         elif answer.status == 409:
             return self.ask_anew(send)
         elif answer.status == 200:
-            for result in answer.body["results"]:
+            for result in singly(answer.body["results"]):
                 assert result["status"] != "forked", result
                 if result["status"] == "set_aside":
                     self.problems[result["n"]] = result["problem"]
@@ -143,7 +143,7 @@ class Twin:
         if answer.body["epoch"] != self.epoch:
             self.new_epoch(answer.body["epoch"])
             return True
-        entries = answer.body["entries"]
+        entries = singly(answer.body["entries"])
         assert [entry["seq"] for entry in entries] == list(range(self.cursor + 1, self.cursor + 1 + len(entries))), "I4: a page of changes has a gap"
         for entry in entries:
             if "text" in entry:
@@ -159,6 +159,14 @@ class Twin:
     def learn_offset(self) -> None:
         """As after an exchange: base's clock less the own."""
         self.offset_ms = -int(self.clock_off.total_seconds() * 1000)
+
+
+def singly(rows: list[dict[str, Any]]) -> list[dict[str, Any]]:
+    """Rows said once with how many follow on, each by itself."""
+    return [
+        {**{key: value for key, value in row.items() if key != "count"}, "n": row["n"] + i, **({"seq": row["seq"] + i} if "seq" in row else {})}
+        for row in rows for i in range(row.get("count", 1))
+    ]
 
 
 def standing(made: Merged) -> str:

@@ -16,6 +16,8 @@ const TIMEOUT_MS = 30_000;
  * @typedef {object} Request
  * @property {string} [token]
  * @property {unknown} [json]
+ * @property {string} [text] of the media type `type`
+ * @property {string} [type]
  * @property {ArrayBuffer} [bytes] part of a photo
  * @property {Record<string, string>} [headers] beside the usual ones
  * @property {boolean} [gzip]
@@ -53,14 +55,15 @@ export async function ask(deps, method, path, request = {}) {
  * @param {string} path
  * @param {Request} request
  */
-async function send(deps, method, path, {token, json, bytes, gzip, headers: more = {}, timeoutMs = TIMEOUT_MS, signal}) {
+async function send(deps, method, path, {token, json, text: plain, type, bytes, gzip, headers: more = {}, timeoutMs = TIMEOUT_MS, signal}) {
   /** @type {Record<string, string>} */
   const headers = {Accept: 'application/json', ...more};
   if (token) headers.Authorization = `Bearer ${token}`;
   if (json !== undefined) headers['Content-Type'] = 'application/json';
+  if (plain !== undefined) headers['Content-Type'] = type ?? 'text/plain';
   if (bytes) headers['Content-Type'] = 'application/octet-stream';
   /** @type {BodyInit | undefined} */
-  let body = bytes ?? (json === undefined ? undefined : JSON.stringify(json));
+  let body = bytes ?? plain ?? (json === undefined ? undefined : JSON.stringify(json));
   if (gzip && typeof body === 'string' && 'CompressionStream' in globalThis) {
     body = await zipped(body);
     headers['Content-Encoding'] = 'gzip';

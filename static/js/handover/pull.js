@@ -6,6 +6,7 @@ import {Problem} from '../store/problem.js';
 import {NewEpoch, NoConnection, Stopped} from './failures.js';
 import {problemIn} from './api.js';
 import {stopForked} from './push.js';
+import {singly} from './runs.js';
 
 /** @typedef {import('./runner.js').Desk} Desk */
 /** @typedef {import('../store/answers.js').Change} Change */
@@ -89,8 +90,9 @@ function changedProblem(name) {
  * @returns {Change[]}
  */
 function consecutive(body, after) {
-  const {entries, through, last} = body;
-  if (!Array.isArray(entries) || !Number.isInteger(through) || !Number.isInteger(last)) {
+  const {through, last} = body;
+  const entries = Array.isArray(body.entries) ? singly(body.entries) : null;
+  if (!entries || !Number.isInteger(through) || !Number.isInteger(last)) {
     throw new NoConnection('the answer is not a list of changes');
   }
   const isWhole = entries.every((each, index) => each.seq === after + 1 + index)

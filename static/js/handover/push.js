@@ -6,6 +6,8 @@ import {WRITTEN} from '../ledger/protocol.js';
 import {Problem} from '../store/problem.js';
 import {NewEpoch, NoConnection, Stopped} from './failures.js';
 import {problemIn} from './api.js';
+import {COLUMNS_TYPE, toColumns} from './columns.js';
+import {singly} from './runs.js';
 
 /** @typedef {import('./runner.js').Desk} Desk */
 /** @typedef {import('../store/answers.js').Result} Result */
@@ -83,9 +85,12 @@ export async function push(desk, size) {
  */
 async function sendBatch(desk, size, batch) {
   const {device, store, epoch} = desk.kept.info;
-  const json = {v: WRITTEN, device, store, epoch, first: batch[0].n, app: desk.deps.app, entries: batch.map(({text}) => text)};
+  const head = {v: WRITTEN, device, store, epoch, first: batch[0].n, app: desk.deps.app};
+  const entries = batch.map(({text}) => text);
+  const columns = toColumns(head, entries);
+  const sent = columns === null ? {json: {...head, entries}} : {text: columns, type: COLUMNS_TYPE};
   try {
-    const answer = await desk.api.ask('POST', 'entries', {json, gzip: true});
+    const answer = await desk.api.ask('POST', 'entries', {...sent, gzip: true});
     if (answer.status === 413) size.shrink(batch.length);
     if (answer.status < 400) await desk.heard(answer);
     return answer;
@@ -103,7 +108,7 @@ async function sendBatch(desk, size, batch) {
  */
 function resultsIn(results, batch) {
   const sent = new Set(batch.map(({n}) => n));
-  const fitting = Array.isArray(results) ? results.filter((each) => sent.has(each?.n) && STATUSES.has(each.status)) : [];
+  const fitting = Array.isArray(results) ? singly(results).filter((each) => sent.has(each.n) && STATUSES.has(each.status)) : [];
   if (!fitting.length) throw new NoConnection('the answer does not speak of what was sent');
   return fitting;
 }

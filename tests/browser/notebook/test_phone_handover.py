@@ -5,10 +5,12 @@ from __future__ import annotations
 import gzip
 import json
 from collections.abc import Callable
+from typing import Any
 
 import pytest
 from playwright.sync_api import Error
 
+from fieldlog.handover.columns import from_columns
 from tests.browser.notebook.faulty_line import Line
 from tests.browser.notebook.notebook_page import NotebookPage, Profile
 from tests.browser.notebook.store_of_one_survey import StoreOfOneSurvey
@@ -28,6 +30,17 @@ def ledger_numbers(store: StoreOfOneSurvey, page: NotebookPage) -> list[int]:
     return [n for _, n, _ in store.entries(device=device_of(page))]
 
 
+
+def batch_in(body: bytes) -> dict[str, Any]:
+    """A batch as it came down the line."""
+    text = (gzip.decompress(body) if body.startswith(b"\x1f\x8b") else body).decode()
+    return from_columns(text, 2**24)
+
+
+def entries_in(body: bytes) -> list[str]:
+    return batch_in(body)["entries"]
+
+
 def test_all_is_at_base_after_handing_over_and_the_clock_offset_is_learnt(
     joined: NotebookPage, line: Line, store: StoreOfOneSurvey
 ) -> None:
@@ -43,7 +56,7 @@ def test_all_is_at_base_after_handing_over_and_the_clock_offset_is_learnt(
     assert store.is_sound()
     [batch] = line.requests("POST")
     assert batch.encoding == "gzip"
-    assert json.loads(gzip.decompress(batch.body))["first"] == 1
+    assert batch_in(batch.body)["first"] == 1
     joined.save(store.site, 30)
     joined.hand_over()
     assert abs(json.loads(store.entries(device=device_of(joined))[-1][2])["offset"]) < 5000
@@ -64,7 +77,7 @@ def test_a_browser_that_cannot_compress_sends_plain(joined: NotebookPage, line: 
     assert joined.hand_over()["phase"] == "idle"
     [batch] = line.requests("POST")
     assert batch.encoding == ""
-    assert len(json.loads(batch.body)["entries"]) == 1
+    assert len(entries_in(batch.body)) == 1
 
 
 def test_an_answer_lost_after_the_commit_doubles_nothing(joined: NotebookPage, line: Line, store: StoreOfOneSurvey) -> None:
@@ -115,7 +128,7 @@ def test_a_batch_that_times_out_is_halved_until_it_passes(joined: NotebookPage, 
     assert joined.hand_over()["phase"] == "offline"
     line.heal()
     assert joined.hand_over()["phase"] == "idle"
-    sizes = [len(json.loads(gzip.decompress(seen.body))["entries"]) for seen in line.requests("POST")]
+    sizes = [len(entries_in(seen.body)) for seen in line.requests("POST")]
     assert sorted(sizes[:2], reverse=True) == [10, 5]
     assert sizes[2:] == [2, 4, 4]
     assert ledger_numbers(store, joined) == list(range(1, 11))
@@ -130,7 +143,7 @@ def test_a_batch_holds_no_more_than_500_entries_and_256_kib(joined: NotebookPage
         [store.site],
     )
     joined.hand_over()
-    batches = [json.loads(gzip.decompress(seen.body))["entries"] for seen in line.requests("POST")]
+    batches = [entries_in(seen.body) for seen in line.requests("POST")]
     assert len(batches) == 2
     assert all(sum(len(text.encode()) for text in batch) <= 256 * 1024 for batch in batches)
     assert ledger_numbers(store, joined) == list(range(1, 151))
@@ -591,7 +604,7 @@ def test_of_two_pages_one_sends_and_both_know(joined: NotebookPage, profile: Pro
 
 
 def _numbers(body: bytes) -> range:
-    batch = json.loads(gzip.decompress(body))
+    batch = batch_in(body)
     return range(batch["first"], batch["first"] + len(batch["entries"]))
 
 
