@@ -153,7 +153,7 @@ class _Handler(BaseHTTPRequestHandler):
             store.close()
 
     def _ask_part(self, body: bytes, share: float) -> None:
-        with socket.create_connection(("127.0.0.1", self.line.store_port), timeout=10) as store:
+        with suppress(OSError), socket.create_connection(("127.0.0.1", self.line.store_port), timeout=10) as store:
             head = f"{self.command} {self.path} HTTP/1.1\r\n" + "".join(f"{k}: {v}\r\n" for k, v in self.headers.items())
             whole = head.encode() + b"\r\n" + body
             store.sendall(whole[: int(len(whole) * share)])
