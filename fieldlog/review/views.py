@@ -46,6 +46,8 @@ def site(survey: str, record: str) -> str:
 
 
 def _filled(name: str, rows: Sequence[Any]) -> bool:
+    if name == "observed_by_clock":  # worth a column only where a clock was off
+        return any(row[name] != row["observed_at"] for row in rows)
     return any(row[name] is not None or row.get(f"{name}_absent") for row in rows)
 
 
@@ -59,7 +61,7 @@ def observation(survey: str, record: str) -> str:
         survey=survey_row(db.session, survey),
         site=site_row(db.session, survey, row["site"]),
         row=row,
-        fields=[field for field in OBSERVATION.fields if field.name != "site"],
+        fields=[field for field in OBSERVATION.fields if field.name != "site" and _filled(field.name, [row])],
         crew=crew_names(db.session, survey),
         changes=service.history(db.session, survey, record),
         versions=service.versions_of_record(db.session, survey, record),
