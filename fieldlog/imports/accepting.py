@@ -15,12 +15,13 @@ from fieldlog.ledger.entry import hash_of
 from fieldlog.people.models import Phone
 from fieldlog.people.service import audit, phones_of
 from fieldlog.sheet.subjects import PHONE_KINDS, SHEETS
-from fieldlog.store.append import GapError, Prepared, append, hashes_of, prepare
+from fieldlog.store.append import GapError, Prepared, append, base_device, hashes_of, prepare
 from fieldlog.store.db import AnySession
 from fieldlog.store.photos import PhotoError, PhotoFolder, check_photo
 from fieldlog.surveys.service import crew_names
 
 BATCH: Final = 500
+BASE: Final = "base itself"
 UNKNOWN: Final = "no phone that joined here: base itself before it was restored, or a copied phone"
 
 
@@ -62,9 +63,10 @@ def look(session: AnySession, survey: str, notebook: Notebook, folder: PhotoFold
     plan = NotebookPlan(str(notebook.head.get("crew_name") or ""), str(notebook.head.get("made_at") or ""))
     names = crew_names(session, survey)
     known = {phone.device: phone for phone in phones_of(session, survey)}
+    base = base_device(session, survey)
     for device, texts in sorted(notebook.entries.items()):
         phone = known.get(device)
-        line = DeviceLine(device, names.get(phone.crew, "") if phone else "", _standing(phone))
+        line = DeviceLine(device, names.get(phone.crew, "") if phone else "", BASE if device == base else _standing(phone))
         held = hashes_of(session, survey, device)
         line.already = sum(held.get(n) == hash_of(text) for n, text in texts.items())
         line.fresh = sum(n not in held for n in texts)
@@ -97,7 +99,7 @@ def accept(session: AnySession, survey: str, by: str, who: str, notebook: Notebo
 
 def _accept_device(session: AnySession, survey: str, by: str, line: DeviceLine, texts: dict[int, str]) -> None:
     numbers = sorted(texts)
-    is_phone = line.standing != UNKNOWN
+    is_phone = line.standing not in (UNKNOWN, BASE)
     batch = [_checked(survey, n, texts[n], is_phone=is_phone) for n in numbers]
     for start in range(0, len(batch), BATCH):
         part = batch[start : start + BATCH]

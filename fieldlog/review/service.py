@@ -19,10 +19,10 @@ from fieldlog.sheet.question import Question, thresholds_of
 from fieldlog.sheet.sample import dune
 from fieldlog.sheet.subjects import label_in
 from fieldlog.sheet.times import read_time
-from fieldlog.store.append import ForeignStoreError, say
+from fieldlog.store.append import ForeignStoreError, base_device, say
 from fieldlog.store.db import AnySession
 from fieldlog.store.projection import numbered_entries_of
-from fieldlog.store.tables import LedgerEntry, SurveyCounter, TwoVersions, observations, photos, same_dunes
+from fieldlog.store.tables import LedgerEntry, TwoVersions, observations, photos, same_dunes
 from fieldlog.surveys.service import Row, crew_names, site_row, sites_of, survey_row
 
 
@@ -299,7 +299,7 @@ def history(session: AnySession, survey: str, record: str) -> list[Change]:
         )
     }
     by_name = {entry.name: entry for _, entry in numbered}
-    desk = session.scalar(select(SurveyCounter.store_device).where(SurveyCounter.survey == survey))
+    desk = base_device(session, survey)
     changes = []
     for seq, entry in numbered:
         fields = [(name, _before(entry, name, by_name), value) for name, value in entry.values.items()]

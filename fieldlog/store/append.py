@@ -109,6 +109,11 @@ def admit_survey(session: AnySession, survey: str) -> None:
         session.execute(insert(SurveyCounter).values(survey=survey, seq=0, store_device=names.new_device(), hlc=""))
 
 
+def base_device(session: AnySession, survey: str) -> str | None:
+    """The id under which this store speaks in a survey."""
+    return session.scalar(select(SurveyCounter.store_device).where(SurveyCounter.survey == survey))
+
+
 def hashes_of(session: AnySession, survey: str, device: str) -> dict[int, str]:
     """n -> SHA-256 of every entry of a device that is here, in the ledger or set aside."""
     held: dict[int, str] = {}

@@ -8,13 +8,16 @@ import socket
 import sqlite3
 from collections.abc import Iterator
 from contextlib import contextmanager
+from datetime import UTC, datetime
 from pathlib import Path
 
 import pytest
 
 from fieldlog.cli.main import COMMANDS
+from fieldlog.ledger.entry import write_text
 from tests.cli.ergbook import ergbook, refused
 from tests.imports import files
+from tests.imports.test_notebook import packed
 
 DEMO = "desertdem0"
 
@@ -123,6 +126,23 @@ def test_parts_not_taken_are_named_and_exit_1(store: Path, tmp_path: Path) -> No
     assert "latitude 91" in done.stderr
     awkward.write_text("name,latitude", encoding="utf-8")
     assert "not XML" in refused(ergbook("import", DEMO, str(awkward), data_dir=store), 2)
+
+
+def test_a_phones_file_is_accepted(store: Path, tmp_path: Path) -> None:
+    with opened(store) as connection:
+        ((site,),) = connection.execute("SELECT record FROM site LIMIT 1").fetchall()
+        ((lead,),) = connection.execute("SELECT record FROM crew WHERE lead LIMIT 1").fetchall()
+    text = write_text(
+        app="0.1.0", by=lead, survey=DEMO, kind="observation", hlc=f"{1:012x}.0000", made_at=datetime(2026, 7, 9, tzinfo=UTC),
+        values={"site": site, "observed_at": "2026-07-09T05:06:07Z", "north": "true", "crest_read_deg": 44},
+    )
+    file = tmp_path / "lost-phone.ergbook"
+    file.write_bytes(packed(DEMO, [("0" * 14 + "1", 1, text)]))
+    assert "1 entry that base does not hold" in ergbook("import", DEMO, str(file), "--preview", data_dir=store).stdout
+    done = ergbook("import", DEMO, str(file), data_dir=store)
+    assert done.returncode == 0, done.stderr
+    assert "Base holds all of it already" in ergbook("import", DEMO, str(file), data_dir=store).stdout
+    assert ergbook("check", data_dir=store).returncode == 0
 
 
 def test_a_busy_port_is_said_and_exit_1(tmp_path: Path) -> None:
