@@ -47,6 +47,7 @@ class NotebookPlan:
     photos: int = 0
     photos_already: int = 0
     photo_problems: list[str] = field(default_factory=list)
+    is_taken: bool = False
 
     @property
     def fresh(self) -> int:
@@ -93,6 +94,7 @@ def accept(session: AnySession, survey: str, by: str, who: str, notebook: Notebo
             plan.photo_problems.append(str(problem))
             continue
         folder.keep(survey, sha256, data)
+    plan.is_taken = True
     audit(session, who, f"accepted the file of phone {notebook.head.get('device')}: {plan.fresh} entries", survey)
     return plan
 
@@ -141,5 +143,7 @@ def sentence(plan: NotebookPlan) -> str:
     parts = [f"{plan.fresh} {'entry' if plan.fresh == 1 else 'entries'}"] if plan.fresh else []
     if plan.photos:
         parts.append(f"{plan.photos} {'photo' if plan.photos == 1 else 'photos'}")
-    return " and ".join(parts) + " that base does not hold." if parts else "Base holds all of it already."
+    if not parts:
+        return "Base holds all of it already."
+    return f"{' and '.join(parts)} {'taken in' if plan.is_taken else 'that base does not hold'}."
 
