@@ -19,7 +19,10 @@ MAY_IMPORT = {
     "draw": {"science"}, "sensors": {"science"}, "handover": {"store", "ledger", "sheet", "science"},
     "ui": {"draw", "sensors", "handover", "store", "ledger", "sheet", "science"},
 }
-IMPORT = re.compile(r"""(?:^|\n)\s*(?:import|export)\b[^'";]*?from\s*['"]([^'"]+)['"]|import\(\s*['"]([^'"]+)['"]\s*\)""")
+IMPORT = re.compile(
+    r"""(?:^|\n)\s*(?:import|export)\b[^'";]*?from\s*['"]([^'"]+)['"]|(?:^|\n)\s*import\s*['"]([^'"]+)['"]"""
+    r"""|\bimport\(\s*['"]([^'"]+)['"]\s*\)|new URL\(\s*['"]([^'"]+\.js)['"]"""
+)
 COMMENT = re.compile(r"/\*.*?\*/|(?<!:)//[^\n]*", re.DOTALL)
 
 
@@ -34,18 +37,42 @@ def test_no_module_is_too_long_to_hold_in_the_head() -> None:
     assert not long
 
 
-@pytest.mark.parametrize("path", [*ours(".js")], ids=name_of)
+SCRIPTS = ROOT / "static" / "js"
+
+
+def imported(path: Path) -> list[str]:
+    """What a script imports: by name, for its effect, when it is needed, or as a worker."""
+    return ["".join(found) for found in IMPORT.findall(COMMENT.sub("", path.read_text(encoding="utf-8")))]
+
+
+@pytest.mark.parametrize("path", [path for path in ours(".js") if SCRIPTS in path.parent.parents], ids=name_of)
 def test_scripts_import_downward_only(path: Path) -> None:
-    inside = path.relative_to(ROOT)
-    if inside.parts[:2] != ("static", "js") or len(inside.parts) == 3:
-        return  # phone.js and desk.js put the parts together
-    room = inside.parts[2]
-    text = COMMENT.sub("", path.read_text(encoding="utf-8"))
-    for found in IMPORT.finditer(text):
-        target = found[1] or found[2]
+    room = path.relative_to(SCRIPTS).parts[0]
+    for target in imported(path):
         assert target.startswith("."), f"{target}: relative imports only, so that a shell stays whole"
-        there = (path.parent / target).resolve().relative_to(ROOT / "static" / "js")
-        assert there.parts[0] in {room} | MAY_IMPORT[room], f"{room} imports {target}"
+        there = (path.parent / target).resolve()
+        assert there.is_file(), target
+        assert there.relative_to(SCRIPTS).parts[0] in {room} | MAY_IMPORT[room], f"{room} imports {target}"
+
+
+def test_parts_are_put_together_in_two_places_that_import_one_another_not() -> None:
+    tops = {path.name: imported(path) for path in SCRIPTS.glob("*.js")}
+    assert set(tops) == {"phone.js", "desk.js"}
+    for targets in tops.values():
+        assert all((SCRIPTS / target).resolve().relative_to(SCRIPTS).parts[0] in MAY_IMPORT for target in targets)
+
+
+@pytest.mark.parametrize(
+    "line",
+    [
+        "import { a } from './x.js';", 'import * as a from "./x.js"', "import {\n  a,\n  b,\n} from './x.js';", "import './x.js';",
+        "export { a } from './x.js';", "const a = await import('./x.js');", "new Worker(new URL('./x.js', import.meta.url))",
+    ],
+)
+def test_every_way_to_import_is_seen(line: str, tmp_path: Path) -> None:
+    script = tmp_path / "script.js"
+    script.write_text(f"/** @type {{import('./type.js').T}} */\n{line}\n", encoding="utf-8")
+    assert imported(script) == ["./x.js"]
 
 
 def test_every_public_name_says_what_it_is() -> None:
