@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import http.client
 import json
 import random
 import signal
@@ -33,8 +34,11 @@ def ask(address: str, token: str = "") -> Send:
             with urllib.request.urlopen(request, timeout=TIMEOUT_S) as answer:
                 return Answer(answer.status, json.loads(answer.read()))
         except urllib.error.HTTPError as error:
-            return Answer(error.code, json.loads(error.read()))
-        except (OSError, ValueError):
+            try:
+                return Answer(error.code, json.loads(error.read()))
+            except (OSError, ValueError, http.client.HTTPException):
+                return None
+        except (OSError, ValueError, http.client.HTTPException):
             return None
 
     return send

@@ -47,7 +47,7 @@ export function wayOut({notebook, leaveSurvey}) {
     save,
     saved,
     el('details', {}, el('summary', {}, 'Leave this survey'),
-      el('p', {class: 'help'}, 'Takes it off this phone. Only when base has everything, or a file does.'), leave, left),
+      el('p', {class: 'help'}, 'Takes it off this phone, once nothing of it is only here.'), leave, left),
   );
 }
 
