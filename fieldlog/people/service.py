@@ -15,7 +15,7 @@ from werkzeug.security import check_password_hash, generate_password_hash
 from fieldlog.errors import Refusal
 from fieldlog.ledger.names import ALPHABET, is_device
 from fieldlog.people.models import AuditLine, JoiningCode, Lead, OneTimeLink, Phone
-from fieldlog.store.append import say
+from fieldlog.store.append import ForeignStoreError, say
 from fieldlog.store.db import AnySession
 from fieldlog.store.tables import crew, surveys
 
@@ -306,7 +306,7 @@ def revoke_phone(session: AnySession, survey: str, device: str, who: str) -> Non
     """Take a phone's token back. What it holds stays on it. Inside `write()`."""
     phone = session.get(Phone, (survey, device))
     if phone is None:
-        raise Refusal("there is no such phone in this survey", device)
+        raise ForeignStoreError("there is no such phone in this survey", device)
     if phone.revoked_at is None:
         phone.revoked_at = _now()
         audit(session, who, f"revoked phone {device}", survey)

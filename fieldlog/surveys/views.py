@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import io
+import re
 from dataclasses import asdict
 from typing import Any
 
@@ -76,11 +77,10 @@ def _set_up_page(survey: str, **more: Any) -> str:
         asking=[SURVEY.by_name[name] for name in ASKING_FIELDS],
         usual={f"{ASKS}{name}": value for name, value in asdict(Thresholds()).items()},
         optional=service.optional_fields(),
-        switched_on=row["optional_fields"] or [],
         sites=service.sites_of(db.session, survey),
         phones=people.phones_of(db.session, survey),
         crew=service.crew_names(db.session, survey),
-        **{"problem": None, "values": row, **more},
+        **{"problem": None, "values": row, "switched_on": row["optional_fields"] or [], **more},
     )
 
 
@@ -97,7 +97,8 @@ def change(survey: str) -> Any:
     except ForeignStoreError:
         raise
     except Refusal as problem:
-        return _set_up_page(survey, problem=problem, values=request.form), 422
+        ticked = request.form.getlist("optional_fields")
+        return _set_up_page(survey, problem=problem, values=request.form, switched_on=ticked), 422
     return redirect(url_for("surveys.page", survey=survey))
 
 
@@ -151,8 +152,8 @@ def make_code(survey: str) -> Any:
     """A new joining code with its link and QR, shown on this answer only."""
     service.survey_row(db.session, survey)
     typed = request.form.get("hours", "48").strip()
-    if not typed.isdigit():
-        raise Refusal(f"{typed!r} is not a number of hours", "hours")
+    if re.fullmatch("[0-9]{1,6}", typed) is None:
+        raise Refusal(f"{typed[:40]!r} is not a number of hours", "hours", "Write a whole number like 48")
     with write() as session:
         code = people.make_joining_code(
             session, survey, secret=str(current_app.secret_key), who=g.lead.name, hours=int(typed)
@@ -178,6 +179,7 @@ def qr_svg(text: str) -> str:
 @callers("lead")
 def close_codes(survey: str) -> Any:
     """Close every open code."""
+    service.survey_row(db.session, survey)
     with write() as session:
         people.close_joining_codes(session, survey, g.lead.name)
     return redirect(url_for("surveys.page", survey=survey, _anchor="phones"))

@@ -11,6 +11,7 @@ from flask import Flask
 from flask.testing import FlaskClient
 from sqlalchemy import func, select
 
+from fieldlog.people.models import JoiningCode
 from fieldlog.store.db import db
 from fieldlog.store.tables import LedgerEntry, sites, surveys
 from tests.http.conftest import Base, csrf
@@ -79,6 +80,22 @@ def test_changing_the_survey_switches_optional_fields_on(app: Flask, base: Base,
     wrong = post(desk, page, page, {**GOOD, "optional_fields": ["crest_deg"]})
     assert wrong.status_code == 422
     assert "not an optional field" in alert(wrong)
+    phone = base.phone()
+    pack = phone.client.get(f"/api/v1/surveys/{base.survey}/changes?after=0", headers=phone.headers).get_json()
+    told = [json.loads(entry["text"]) for entry in pack["entries"]]
+    assert [said["set"]["optional_fields"] for said in told if "optional_fields" in said["set"]] == [["height_m", "activity"]]
+
+
+def test_a_wrong_change_keeps_what_was_typed_and_ticked(app: Flask, base: Base, desk: FlaskClient) -> None:
+    page = f"/surveys/{base.survey}"
+    assert post(desk, page, page, {**GOOD, "optional_fields": ["activity"]}).status_code == 302
+    before = entries(app)
+    wrong = post(desk, page, page, {**GOOD, "target_half_width_deg": "-3", "note": "kept as typed", "optional_fields": ["height_m"]})
+    assert wrong.status_code == 422
+    text = wrong.get_data(as_text=True)
+    assert "kept as typed" in text
+    assert re.findall(r'name="optional_fields" value="(\w+)" checked', text) == ["height_m"]
+    assert entries(app) == before
 
 
 def test_a_site_is_added_changed_crossed_out_and_taken_back(app: Flask, base: Base, desk: FlaskClient) -> None:
@@ -130,12 +147,14 @@ def test_a_joining_code_is_shown_once_with_its_qr_and_closed(app: Flask, base: B
     assert app.test_client().post("/api/v1/joining/look", json={"code": code[1]}).status_code == 422
 
 
-@pytest.mark.parametrize("hours", ["0", "-1", "100000", "soon", ""])
-def test_a_code_for_no_sensible_time_is_refused(base: Base, desk: FlaskClient, hours: str) -> None:
+@pytest.mark.parametrize("hours", ["0", "-1", "1441", "10000", "soon", "", "1.5", "\u00b2", "9" * 5000])
+def test_a_code_for_no_sensible_time_is_refused(app: Flask, base: Base, desk: FlaskClient, hours: str) -> None:
     page = f"/surveys/{base.survey}"
     answer = post(desk, page, f"{page}/joining-codes", {"hours": hours})
-    assert answer.status_code in (400, 422)
+    assert answer.status_code == 422
     assert "hours" in answer.get_data(as_text=True)
+    with app.app_context():
+        assert db.session.scalars(select(JoiningCode)).all() == []
 
 
 def test_a_revoked_phone_is_told_so(base: Base, desk: FlaskClient) -> None:
@@ -155,9 +174,40 @@ def test_a_survey_that_is_not_there_is_a_page_with_a_way_on(base: Base, desk: Fl
         assert 'href="/' in answer.get_data(as_text=True)
 
 
-def test_every_change_is_by_the_lead_who_made_it(app: Flask, base: Base, desk: FlaskClient) -> None:
-    form = f"/surveys/{base.survey}/site"
-    post(desk, form, form, {"name": "Mine", "lat_deg": "20", "lon_deg": "10"})
-    assert entries(app)[-1]["by"] == base.lead
+def test_what_is_not_there_is_not_changed(app: Flask, base: Base, desk: FlaskClient) -> None:
+    page, before = f"/surveys/{base.survey}", entries(app)
+    for address, status in (
+        ("/surveys/0000000000", 404), ("/surveys/0000000000/site", 404), (f"{page}/site/none", 404), (f"{page}/site/none/cross-out", 404),
+        ("/surveys/0000000000/joining-codes", 404), ("/surveys/0000000000/joining-codes/close", 404), (f"{page}/phones/none/revoke", 404),
+    ):
+        answer = post(desk, page, address, {**GOOD, "lat_deg": "20", "lon_deg": "10", "reason": "x", "hours": "1"})
+        assert answer.status_code == status, address
+        assert 'href="/' in answer.get_data(as_text=True)
+    assert entries(app) == before
+
+
+def test_a_reason_as_long_as_a_book_is_refused(app: Flask, base: Base, desk: FlaskClient) -> None:
+    before = entries(app)
+    answer = post(desk, f"/surveys/{base.survey}", f"/surveys/{base.survey}/site/{base.site}/cross-out", {"reason": "x" * 5000})
+    assert answer.status_code == 422
+    assert "Crossed out because" in answer.get_data(as_text=True)
+    assert entries(app) == before
+
+
+def test_every_change_is_one_entry_by_the_lead_who_made_it(app: Flask, base: Base, desk: FlaskClient) -> None:
+    page = f"/surveys/{base.survey}"
+    place = {"name": "Comb 1", "lat_deg": "-19.95", "lon_deg": "66.03", "radius_m": "500"}
+    before = len(entries(app))
+    for address, form in (
+        (page, {**GOOD, "note": "Mind the tide"}), (f"{page}/site", {"name": "Mine", "lat_deg": "20", "lon_deg": "10"}),
+        (f"{page}/site/{base.site}", {**place, "radius_m": "400"}), (f"{page}/site/{base.site}/cross-out", {"reason": "flooded"}),
+        (f"{page}/site/{base.site}/cross-out", {}),
+    ):
+        assert post(desk, page, address, form).status_code == 302
+    made = entries(app)[before:]
+    assert [(entry["kind"], entry["by"]) for entry in made] == [("survey", base.lead), *[("site", base.lead)] * 4]
+    assert made[2]["set"] == {"radius_m": 400}
+    assert post(desk, page, f"{page}/site/{base.site}", {**place, "radius_m": "400"}).status_code == 302
+    assert len(entries(app)) == before + 5, "saving what stands already says nothing"
     with app.app_context():
         assert db.session.scalar(select(func.count()).select_from(sites)) == 2
