@@ -200,12 +200,15 @@ def site_sheet(session: AnySession, survey: str, record: str) -> SiteSheet:
     """All of one site."""
     head = survey_row(session, survey)
     site = site_row(session, survey, record)
-    rows = _observations(session, survey, observations.c.site == record)
-    asked: dict[str, list[Question]] = defaultdict(list)
-    for question in questions(rows, sites=[site], thresholds=thresholds_of(head), time_zone=head["time_zone"]):
-        asked[question.record].append(question)
-    doubtful: dict[str, list[str]] = defaultdict(list)
+    everything = _observations(session, survey)
+    rows = [row for row in everything if row["site"] == record]
     records = {row["record"] for row in rows}
+    asked: dict[str, list[Question]] = defaultdict(list)
+    # An instrument's day and a phone's order go over several sites, so all of the survey is asked.
+    for question in questions(everything, sites=sites_of(session, survey), thresholds=thresholds_of(head), time_zone=head["time_zone"]):
+        if question.record in records:
+            asked[question.record].append(question)
+    doubtful: dict[str, list[str]] = defaultdict(list)
     for name, fieldname in session.execute(
         select(TwoVersions.record, TwoVersions.field).where(TwoVersions.survey == survey)
     ):

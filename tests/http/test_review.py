@@ -19,8 +19,9 @@ from fieldlog.store.db import db
 from fieldlog.store.rebuild import check
 from fieldlog.store.tables import observations
 from fieldlog.store.transaction import write
-from fieldlog.surveys.service import put_site
+from fieldlog.surveys.service import change_survey, put_site
 from tests.http.conftest import Base, csrf
+from tests.http.text import apart, plain
 
 FACES = [214, 220, 209, 231, 198, 205, 217, 222, 240, 210]
 
@@ -58,11 +59,6 @@ def sheet(desk: FlaskClient, base: Base, **wanted: str) -> str:
     answer = desk.get(f"/surveys/{base.survey}/day", query_string=wanted)
     assert answer.status_code == 200
     return plain(answer.get_data(as_text=True))
-
-
-def plain(page: str) -> str:
-    """A page as text."""
-    return re.sub(r"\s+", " ", re.sub(r"<svg.*?</svg>|<style.*?</style>|<[^>]+>", " ", page, flags=re.DOTALL))
 
 
 def test_a_day_sheet_without_data_says_what_is_missing(base: Base, desk: FlaskClient) -> None:
@@ -134,6 +130,7 @@ def test_history_shows_every_entry_and_what_it_replaced(base: Base, desk: FlaskC
     page = plain(desk.get(f"/surveys/{base.survey}/observations/{record}").get_data(as_text=True))
     assert "214° → 241°" in page
     assert page.count(f"phone {notebook.phone.device}") == 2
+    assert page.count("Ysolde , 2026-07-08 09:06:07") == 2, "who and when, in the survey's zone"
     with base.app.app_context():
         assert db.session.scalar(select(observations.c.slip_face_deg)) == 241
 
@@ -230,14 +227,44 @@ def test_dunes_of_two_phones_are_two_until_the_lead_says_they_are_one(base: Base
         assert list(check(db.session)) == []
 
 
-def test_what_people_write_stays_text(base: Base, desk: FlaskClient) -> None:
+def test_what_people_write_stays_text_with_a_direction_of_its_own(base: Base, desk: FlaskClient) -> None:
+    """Each lies in an element of its own whose direction is its own, so that it turns nothing around it."""
     nasty = "<script>alert(1)</script> \u0631\u0645\u0644"
-    notebook = Notebook(base, nasty)
-    record = notebook.read(214, note=nasty, instrument="\u202eevil")
-    for path in ("day", f"sites/{base.site}", f"observations/{record}"):
-        page = desk.get(f"/surveys/{base.survey}/{path}").get_data(as_text=True)
+    names = {what: f"{what} {nasty}" for what in ("survey", "site", "crew", "note", "instrument", "reason")}
+    with base.app.app_context(), write() as session:
+        change_survey(session, base.survey, base.lead, {"name": names["survey"]})
+        put_site(session, base.survey, base.lead, {"name": names["site"], "dune_pattern": names["note"]}, base.site)
+    notebook, other = Notebook(base, names["crew"]), Notebook(base, f"other {names['crew']}")
+    other.read(214)
+    record = notebook.read(214, note=names["note"], instrument=names["instrument"])
+    other.say({"note": f"other {names['note']}"}, record=record)
+    notebook.say({"crossed_out": names["reason"]}, record=notebook.read(30))
+    for path in ("", "/day", f"/sites/{base.site}", f"/observations/{record}", "/export", "/import", f"/site/{base.site}"):
+        page = desk.get(f"/surveys/{base.survey}{path}").get_data(as_text=True)
         assert "<script>alert" not in page, path
         assert "&lt;script&gt;" in page, path
+        assert [text for text, is_apart in apart(page) if nasty in text and not is_apart] == [], path
+    assert [text for text, is_apart in apart(desk.get("/surveys").get_data(as_text=True)) if nasty in text and not is_apart] == []
+
+
+def test_a_question_that_spans_sites_is_on_the_sheet_of_its_site(base: Base, desk: FlaskClient) -> None:
+    """Saved after a reading of another site, said to be observed before it."""
+    with base.app.app_context(), write() as session:
+        second = put_site(session, base.survey, base.lead, {"name": "Comb 2", "lat_deg": -19.9, "lon_deg": 66.03})
+    notebook = Notebook(base, "Ysolde")
+    notebook.read(214, at="2026-07-08T05:30:00Z")
+    notebook.read(210, at="2026-07-08T05:00:00Z", site=second)
+    assert "1 question" in sheet(desk, base)
+    assert "Is the time right?" in plain(desk.get(f"/surveys/{base.survey}/sites/{second}").get_data(as_text=True))
+    assert "Is the time right?" not in plain(desk.get(f"/surveys/{base.survey}/sites/{base.site}").get_data(as_text=True))
+
+
+def test_a_day_without_readings_is_named_in_its_filter(base: Base, desk: FlaskClient) -> None:
+    Notebook(base, "Ysolde").read(214)
+    page = desk.get(f"/surveys/{base.survey}/day?day=2026-07-01").get_data(as_text=True)
+    assert "1 July 2026" in page
+    assert re.findall(r'<option value="([^"]*)" selected', page) == ["2026-07-01"]
+    assert "0 of 1 readings" in plain(page)
 
 
 @contextmanager
